@@ -1,0 +1,3 @@
+export * from './clinic-date.ts';
+export * from './format-day.ts';
+export * from './instant.ts';

@@ -1,0 +1,36 @@
+import fc from 'fast-check';
+import { describe, expect, test } from 'vitest';
+import { minor, splitByWeights, splitEvenly, sum } from '#domain/money/index';
+
+describe('splitByWeights', () => {
+  test('left-over units · go to the largest remainders · KPMG 20/30/40 over 80', () => {
+    expect(splitByWeights(minor(80), [20, 30, 40])).toEqual([18, 27, 35]);
+  });
+  test('twelve parts · of 4,990.00 · four of 415.84 and eight of 415.83', () => {
+    expect(splitEvenly(minor(499_000), 12)).toEqual([...Array(4).fill(41_584), ...Array(8).fill(41_583)]);
+  });
+  test('nothing can carry · a non-zero amount · is refused', () => {
+    expect(() => splitByWeights(minor(1), [0, 0])).toThrow(RangeError);
+    expect(() => splitByWeights(minor(1), [0.5])).toThrow(RangeError);
+  });
+  test('any split · of either sign · adds up and strays less than one unit (invariant 12)', () => {
+    fc.assert(
+      fc.property(
+        fc.integer({ min: -1e12, max: 1e12 }),
+        fc.array(fc.integer({ min: 0, max: 1e9 }), { minLength: 1, maxLength: 20 }),
+        (amount, weights) => {
+          const whole = weights.reduce((a, b) => a + b, 0);
+          fc.pre(whole > 0);
+          const parts = splitByWeights(minor(amount), weights);
+          expect(sum(parts)).toBe(amount);
+          parts.forEach((part, i) => {
+            const exact = (BigInt(amount) * BigInt(weights[i] ?? 0) * 1000n) / BigInt(whole);
+            const off = BigInt(part) * 1000n - exact;
+            expect(off <= 1000n && off >= -1000n).toBe(true);
+          });
+        },
+      ),
+      { numRuns: 1000 },
+    );
+  });
+});
