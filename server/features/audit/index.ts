@@ -1,0 +1,1 @@
+export { type AuditNote, recordAudit } from './record-audit.ts';

@@ -1,0 +1,1 @@
+export { lockDayForClosing, lockOpenDay, todayAt, zoneOf } from './open-day.ts';
