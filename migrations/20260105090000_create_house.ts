@@ -166,7 +166,7 @@ export async function up(db: Knex): Promise<void> {
       subject VARCHAR(200) NOT NULL,
       body_text MEDIUMTEXT NOT NULL,
       body_html MEDIUMTEXT NOT NULL,
-      document_ids JSON NOT NULL,
+      attachments JSON NOT NULL,
       subject_type VARCHAR(40) NOT NULL,
       subject_id BIGINT UNSIGNED NOT NULL,
       state VARCHAR(8) NOT NULL,
