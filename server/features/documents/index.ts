@@ -1,0 +1,10 @@
+export { deliverDueMails, type MailDeps } from './deliver-mails.ts';
+export {
+  type DocumentKind,
+  type DocumentMaker,
+  type DocumentMakers,
+  documentFor,
+  type MadeDocument,
+  type StoredDocument,
+} from './document-for.ts';
+export { type MailText, type QueuedMail, queueMail } from './outbox.ts';
