@@ -2,8 +2,9 @@ import { addMs, type Instant } from '#domain/time/index';
 import type { MailGateway } from '#server/gateways/index';
 import { rawRows, sqlInstant } from '#server/platform/db';
 import type { Deps } from '#server/platform/deps';
+import type { DocumentKind } from '#server/platform/outbox';
 import { inTransaction } from '#server/platform/transaction';
-import { type DocumentKind, type DocumentMakers, documentFor } from './document-for.ts';
+import { type DocumentMakers, documentFor } from './document-for.ts';
 
 interface DueMail {
   readonly outbox_mail_id: number;

@@ -1,11 +1,9 @@
 import { createHash } from 'node:crypto';
 import { rawRows, sqlInstant } from '#server/platform/db';
 import type { Deps } from '#server/platform/deps';
+import type { DocumentKind } from '#server/platform/outbox';
 import { notFound } from '#server/platform/problem';
 import { inTransaction } from '#server/platform/transaction';
-
-/** What can be printed. Each kind has one maker, registered by the composition root. */
-export type DocumentKind = 'quote' | 'receipt' | 'day_close' | 'fee_statement';
 
 /** A document fresh from its renderer. */
 export interface MadeDocument {

@@ -7,4 +7,3 @@ export {
   type MadeDocument,
   type StoredDocument,
 } from './document-for.ts';
-export { type MailText, type QueuedMail, queueMail } from './outbox.ts';

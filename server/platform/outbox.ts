@@ -1,7 +1,9 @@
-import { sqlInstant, type Trx } from '#server/platform/db';
-import { isDuplicate } from '#server/platform/db-errors';
-import type { Deps } from '#server/platform/deps';
-import type { DocumentKind } from './document-for.ts';
+import { sqlInstant, type Trx } from './db.ts';
+import { isDuplicate } from './db-errors.ts';
+import type { Deps } from './deps.ts';
+
+/** What can be printed and attached. The documents feature has one maker for each. */
+export type DocumentKind = 'quote' | 'receipt' | 'day_close' | 'fee_statement';
 
 /** What a mail says, as the renderers of documents/render make it. */
 export interface MailText {
