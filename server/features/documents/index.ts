@@ -1,6 +1,5 @@
 export { deliverDueMails, type MailDeps } from './deliver-mails.ts';
 export {
-  type DocumentKind,
   type DocumentMaker,
   type DocumentMakers,
   documentFor,
