@@ -1,0 +1,35 @@
+import type { Refuse, WantedEye } from './check-input.ts';
+import type { CompiledPriceBook } from './compile.ts';
+import type { CourseInput } from './course.ts';
+import type { Package } from './price-book.ts';
+
+/** The package asked for, when it fits the eyes and procedures. */
+export function checkPackage(
+  input: CourseInput,
+  compiled: CompiledPriceBook,
+  eyes: readonly WantedEye[],
+  refuse: Refuse,
+): Package | null {
+  if (input.packageId === null) return null;
+  const chosen = compiled.packages.get(input.packageId);
+  if (!chosen) {
+    const words = `The price book has no package "${input.packageId}".`;
+    refuse('packageId', 'unknown_rule', words, 'Choose a package of this book, or none.');
+    return null;
+  }
+  const treated = [input.eyes.OD, input.eyes.OS].filter((wish) => wish !== null).length;
+  if (treated > 0 && treated !== (chosen.eyes === 'both' ? 2 : 1)) {
+    const words = `${chosen.label} is for ${chosen.eyes === 'both' ? 'both eyes' : 'one eye'}.`;
+    refuse('packageId', 'package_does_not_fit', words, 'Choose another package, or none.');
+  }
+  for (const { eye, procedure } of eyes) {
+    if (chosen.procedureIds.includes(procedure.id)) continue;
+    refuse(
+      `eyes.${eye}.procedureId`,
+      'package_does_not_fit',
+      `${chosen.label} does not cover ${procedure.label}.`,
+      'Choose a procedure of the package, or no package.',
+    );
+  }
+  return chosen;
+}
