@@ -1,0 +1,3 @@
+export * from './take-payment.ts';
+export * from './tenders.ts';
+export * from './waterfall.ts';
