@@ -111,7 +111,7 @@ function checkEye(
   const meridianMd = strongestMeridianMd(form);
   const bands = [
     checkBand(eye, procedure, compiled, 'meridian', Math.abs(meridianMd), refuse),
-    checkBand(eye, procedure, compiled, 'cylinder', -form.cylinderMd, refuse),
+    checkBand(eye, procedure, compiled, 'cylinder', Math.abs(form.cylinderMd), refuse),
   ].filter((band) => band !== null);
   return { eye, wish, procedure, form, meridianMd, bands, on: dayOfEye(input, eye) };
 }

@@ -179,7 +179,7 @@ function bandSteps(band: Band, wantedEye: WantedEye, wanted: WantedCourse): Step
     { label: 'Entered', value: { kind: 'prescription', sphereMd, cylinderMd, axisDeg } },
     { label: 'Minus-cylinder form', value: { kind: 'prescription', ...form } },
     band.measure === 'cylinder'
-      ? { label: 'Cylinder', value: { kind: 'size', sizeMd: -form.cylinderMd } }
+      ? { label: 'Cylinder', value: { kind: 'size', sizeMd: Math.abs(form.cylinderMd) } }
       : { label: 'Strongest meridian', value: { kind: 'power', powerMd: meridianMd } },
     charge,
     ruleStep(wanted, band.id),

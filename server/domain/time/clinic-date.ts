@@ -1,4 +1,5 @@
 import { Temporal } from 'temporal-polyfill';
+import { dayNumber, dayText, monthsLater } from './civil.ts';
 import type { Instant } from './instant.ts';
 
 /** A calendar day at a site, 'YYYY-MM-DD'. Compares as text. */
@@ -28,17 +29,17 @@ export function dayOf(at: Instant, zone: string): ClinicDate {
 
 /** n days later (earlier when negative). */
 export function addDays(day: ClinicDate, n: number): ClinicDate {
-  return Temporal.PlainDate.from(day).add({ days: n }).toString() as ClinicDate;
+  return dayText(dayNumber(day) + n) as ClinicDate;
 }
 
 /** n months later; a day the month does not have becomes its last (31 Jan + 1 month = 28 or 29 Feb). */
 export function addMonths(day: ClinicDate, n: number): ClinicDate {
-  return Temporal.PlainDate.from(day).add({ months: n }).toString() as ClinicDate;
+  return monthsLater(day, n) as ClinicDate;
 }
 
 /** Whole days from one day to another; negative when `to` lies before `from`. */
 export function daysBetween(from: ClinicDate, to: ClinicDate): number {
-  return Temporal.PlainDate.from(from).until(Temporal.PlainDate.from(to), { largestUnit: 'days' }).days;
+  return dayNumber(to) - dayNumber(from);
 }
 
 /** ISO weekday, 1 Monday to 7 Sunday. */
