@@ -6,16 +6,18 @@ export const ROLES = ['counsellor', 'front_desk', 'surgeon', 'manager', 'auditor
 export type Role = (typeof ROLES)[number];
 
 /** Who may call: anybody, the holder of a patient's link, or staff of any of the roles. */
-export type Access =
-  | { readonly kind: 'public' }
-  | { readonly kind: 'patient' }
-  | { readonly kind: 'staff'; readonly roles: readonly Role[] };
+export type Access = { readonly kind: 'public' } | { readonly kind: 'patient' } | StaffAccess;
+
+export interface StaffAccess {
+  readonly kind: 'staff';
+  readonly roles: readonly Role[];
+}
 
 /** Staff of any role. */
-export const ANY_STAFF: Access = { kind: 'staff', roles: ROLES };
+export const ANY_STAFF: StaffAccess = { kind: 'staff', roles: ROLES };
 
 /** Staff of one of these roles. */
-export function staff(...roles: readonly Role[]): Access {
+export function staff(...roles: readonly Role[]): StaffAccess {
   return { kind: 'staff', roles };
 }
 
@@ -28,6 +30,7 @@ export interface Contract<
   Q extends Shape = Shape,
   B extends z.ZodType | undefined = z.ZodType | undefined,
   R extends z.ZodType = z.ZodType,
+  A extends Access = Access,
 > {
   /** Unique, camelCase, a verb of the trade ("startDeposit"). OpenAPI's operationId. */
   readonly id: string;
@@ -35,7 +38,7 @@ export interface Contract<
   readonly method: 'get' | 'post' | 'put' | 'patch' | 'delete';
   /** Express path with :params, below the origin ("/api/quotes/:quoteId"). */
   readonly path: string;
-  readonly access: Access;
+  readonly access: A;
   readonly params: P;
   readonly query: Q;
   readonly body: B;
@@ -48,12 +51,18 @@ export interface Contract<
   readonly problems: readonly ProblemCode[];
 }
 
-interface Definition<P extends Shape, Q extends Shape, B extends z.ZodType | undefined, R extends z.ZodType> {
+interface Definition<
+  P extends Shape,
+  Q extends Shape,
+  B extends z.ZodType | undefined,
+  R extends z.ZodType,
+  A extends Access,
+> {
   id: string;
   summary: string;
   method: Contract['method'];
   path: string;
-  access: Access;
+  access: A;
   params?: P;
   query?: Q;
   body?: B;
@@ -70,7 +79,8 @@ export function defineContract<
   Q extends Shape = undefined,
   B extends z.ZodType | undefined = undefined,
   R extends z.ZodType = z.ZodType,
->(definition: Definition<P, Q, B, R>): Contract<P, Q, B, R> {
+  A extends Access = Access,
+>(definition: Definition<P, Q, B, R, A>): Contract<P, Q, B, R, A> {
   return {
     status: 200,
     produces: 'application/json',

@@ -72,15 +72,17 @@ export const attemptField = z.uuid();
 export const derivationSchema = z
   .object({
     title: z.string(),
-    steps: z.array(
-      z.object({
-        label: z.string(),
-        amountMinor: z.int().optional(),
-        text: z.string().optional(),
-        rule: z.string().optional(),
-        version: z.string().optional(),
-      }),
-    ),
+    steps: z
+      .array(
+        z.object({
+          label: z.string(),
+          amountMinor: z.int().optional(),
+          text: z.string().optional(),
+          rule: z.string().optional(),
+          version: z.string().optional(),
+        }),
+      )
+      .readonly(),
     note: z.string().optional(),
   })
   .meta({ id: 'Derivation' });

@@ -1,8 +1,12 @@
+import * as courses from './courses.ts';
 import type { Contract } from './define.ts';
+import * as delivery from './delivery.ts';
 import * as operations from './operations.ts';
+import * as payments from './payments.ts';
+import * as portal from './portal.ts';
 
 /** One file per feature; the registry that binds, documents and tests every operation. */
-const FILES: readonly Readonly<Record<string, unknown>>[] = [operations];
+const FILES: readonly Readonly<Record<string, unknown>>[] = [operations, courses, payments, delivery, portal];
 
 function isContract(value: unknown): value is Contract {
   return (

@@ -1,17 +1,17 @@
 import { type ClinicDate, dayOf } from '#domain/time/index';
-import { rawRows, sqlInstant, type Trx } from '#server/platform/db';
+import { type Db, rawRows, sqlInstant, type Trx } from '#server/platform/db';
 import type { Deps } from '#server/platform/deps';
 import { notFound } from '#server/platform/problem';
 
 /** The zone of a site, IANA name. */
-export async function zoneOf(trx: Trx, siteId: number): Promise<string> {
+export async function zoneOf(trx: Trx | Db, siteId: number): Promise<string> {
   const row = await trx<{ site_id: number; zone: string }>('sites').where({ site_id: siteId }).first('zone');
   if (!row) throw notFound('site');
   return row.zone;
 }
 
 /** Today on the wall of a site. */
-export async function todayAt(trx: Trx, deps: Pick<Deps, 'clock'>, siteId: number): Promise<ClinicDate> {
+export async function todayAt(trx: Trx | Db, deps: Pick<Deps, 'clock'>, siteId: number): Promise<ClinicDate> {
   return dayOf(deps.clock.now(), await zoneOf(trx, siteId));
 }
 

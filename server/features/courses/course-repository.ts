@@ -138,7 +138,7 @@ export async function courseDues(trx: Db | Trx, courseId: number): Promise<Cours
 export async function coursePaid(
   trx: Db | Trx,
   courseId: number,
-): Promise<{ appliedMinor: Minor; creditMinor: Minor }> {
+): Promise<{ readonly appliedMinor: Minor; readonly creditMinor: Minor }> {
   const [row] = await rawRows<{ applied: unknown; credit: unknown }>(
     trx,
     `SELECT SUM(r.applied_minor) AS applied, SUM(r.credit_minor) AS credit

@@ -1,4 +1,6 @@
 import { EYES } from '#domain/eye';
+import { ACCOUNT } from '#domain/ledger/index';
+import { splitByWeights } from '#domain/money/index';
 import {
   type CourseInput,
   type Obligation,
@@ -39,13 +41,13 @@ interface AcceptedQuote {
 
 /** Income account of each kind of promise; the chart's defaults. */
 const INCOME_ACCOUNT: Readonly<Record<Obligation['kind'], string>> = {
-  assessment: '4000',
-  surgery: '4010',
-  aftercare: '4020',
-  service: '4020',
-  enhancement: '4030',
-  goods: '4060',
-  instalment_charge: '4070',
+  assessment: ACCOUNT.assessmentIncome,
+  surgery: ACCOUNT.surgeryIncome,
+  aftercare: ACCOUNT.aftercareIncome,
+  service: ACCOUNT.aftercareIncome,
+  enhancement: ACCOUNT.enhancementIncome,
+  goods: ACCOUNT.goodsIncome,
+  instalment_charge: ACCOUNT.instalmentCharges,
 };
 
 /**
@@ -175,6 +177,10 @@ async function insertObligations(trx: Trx, courseId: number, priced: PricedCours
   const parts = priced.obligations.flatMap((obligation) =>
     obligation.parts.map((part) => ({ obligation, part })),
   );
+  const taxes = splitByWeights(
+    priced.taxMinor,
+    parts.map(({ part }) => part.amountMinor),
+  );
   await trx('obligations').insert(
     parts.map(({ obligation, part }, index) => ({
       course_id: courseId,
@@ -186,6 +192,7 @@ async function insertObligations(trx: Trx, courseId: number, priced: PricedCours
       label: part.label,
       stand_alone_minor: obligation.standAloneMinor,
       allocated_minor: part.amountMinor,
+      tax_minor: taxes[index],
       account_code: INCOME_ACCOUNT[obligation.kind],
     })),
   );

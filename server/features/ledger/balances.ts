@@ -1,9 +1,9 @@
 import type { Minor } from '#domain/money/index';
 import type { ClinicDate } from '#domain/time/index';
-import { rawRows, readMinor, type Trx } from '#server/platform/db';
+import { type Db, rawRows, readMinor, type Trx } from '#server/platform/db';
 
 /** Debits less credits of one account for one course, on everything posted so far. */
-export async function courseBalance(trx: Trx, courseId: number, account: string): Promise<Minor> {
+export async function courseBalance(trx: Trx | Db, courseId: number, account: string): Promise<Minor> {
   const [row] = await rawRows<{ total: unknown }>(
     trx,
     'SELECT SUM(amount_minor) AS total FROM journal_lines WHERE course_id = ? AND account_code = ?',
@@ -13,7 +13,7 @@ export async function courseBalance(trx: Trx, courseId: number, account: string)
 }
 
 /** Debits less credits of one account for one till. */
-export async function tillBalance(trx: Trx, tillId: number, account: string): Promise<Minor> {
+export async function tillBalance(trx: Trx | Db, tillId: number, account: string): Promise<Minor> {
   const [row] = await rawRows<{ total: unknown }>(
     trx,
     'SELECT SUM(amount_minor) AS total FROM journal_lines WHERE till_id = ? AND account_code = ?',

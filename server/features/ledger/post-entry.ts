@@ -1,8 +1,10 @@
+import type { Eye } from '#domain/eye';
 import { checkEntry, type EntryDraft } from '#domain/ledger/index';
+import type { CurrencyCode } from '#domain/money/index';
 import type { ClinicDate } from '#domain/time/index';
 import { lockOpenDay } from '#server/features/business-days/index';
 import { type Actor, userIdOf } from '#server/platform/actor';
-import { insertRow, rawRows, sqlInstant, type Trx } from '#server/platform/db';
+import { insertRow, rawRows, readMinor, sqlInstant, type Trx } from '#server/platform/db';
 import type { Deps } from '#server/platform/deps';
 import { BrokenInvariant } from '#server/platform/problem';
 
@@ -86,4 +88,46 @@ export async function entryOf(trx: Trx, source: EntrySource, kind: string): Prom
     [source.type, source.id, kind],
   );
   return row?.journal_entry_id;
+}
+
+/** A posted entry with its lines as a draft has them: what a reversal starts from. */
+export async function readEntry(
+  trx: Trx,
+  source: EntrySource,
+  kind: string,
+): Promise<(Pick<EntryDraft, 'currency' | 'memo' | 'lines'> & { readonly entryId: number }) | undefined> {
+  const [entry] = await rawRows<{ journal_entry_id: number; currency: CurrencyCode; memo: string }>(
+    trx,
+    'SELECT journal_entry_id, currency, memo FROM journal_entries WHERE source_type = ? AND source_id = ? AND kind = ?',
+    [source.type, source.id, kind],
+  );
+  if (!entry) return undefined;
+  const lines = await rawRows<{
+    account_code: string;
+    amount_minor: number;
+    course_id: number | null;
+    eye: Eye | null;
+    obligation_id: number | null;
+    till_id: number | null;
+    payee_id: number | null;
+  }>(
+    trx,
+    `SELECT account_code, amount_minor, course_id, eye, obligation_id, till_id, payee_id FROM journal_lines
+     WHERE journal_entry_id = ? ORDER BY line_no`,
+    [entry.journal_entry_id],
+  );
+  return {
+    entryId: entry.journal_entry_id,
+    currency: entry.currency,
+    memo: entry.memo,
+    lines: lines.map((line) => ({
+      account: line.account_code,
+      amountMinor: readMinor(line.amount_minor),
+      ...(line.course_id === null ? {} : { courseId: line.course_id }),
+      ...(line.eye === null ? {} : { eye: line.eye }),
+      ...(line.obligation_id === null ? {} : { obligationId: line.obligation_id }),
+      ...(line.till_id === null ? {} : { tillId: line.till_id }),
+      ...(line.payee_id === null ? {} : { payeeId: line.payee_id }),
+    })),
+  };
 }

@@ -99,7 +99,7 @@ async function recordPaid(
     changeMinor: 0,
     roundingMinor: 0,
     occurredOn: dayOf(deps.clock.now(), zone),
-    tillSessionId: null,
+    till: null,
     attemptKey: attempt.attemptKey,
     actor: SYSTEM,
   });
