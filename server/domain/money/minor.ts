@@ -63,6 +63,12 @@ export function divideHalfAway(numerator: bigint, denominator: bigint): bigint {
 
 /** amount × numerator / denominator, halves away from zero. */
 export function scale(amount: Minor, numerator: number, denominator: number): Minor {
+  const doubled = 2 * amount * numerator;
+  if (denominator > 0 && Math.abs(doubled) + denominator < Number.MAX_SAFE_INTEGER) {
+    const size = Math.abs(doubled) + denominator;
+    const quotient = (size - (size % (2 * denominator))) / (2 * denominator);
+    return minor(doubled < 0 ? -quotient : quotient);
+  }
   return minor(Number(divideHalfAway(BigInt(amount) * BigInt(numerator), BigInt(denominator))));
 }
 

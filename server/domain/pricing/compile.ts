@@ -1,4 +1,6 @@
+import { formatAmount } from '#domain/money/index';
 import { CYLINDER_LIMIT_MD, POWER_STEP_MD, SPHERE_LIMIT_MD } from '#domain/prescription/index';
+import { daysBeforeWords, formatRate } from './explain.ts';
 import type {
   AddOn,
   Band,
@@ -33,6 +35,8 @@ export interface CompiledPriceBook {
   readonly paymentPlans: ReadonlyMap<string, PaymentPlan>;
   readonly secondEye: ReadonlyMap<string, SecondEyeRule>;
   readonly bands: ReadonlyMap<string, Readonly<Record<Band['measure'], readonly BandAt[]>>>;
+  /** Words that are the same for every course of the book. */
+  readonly words: { readonly deposit: string; readonly balance: string; readonly moves: string };
 }
 
 /** A meridian can be as strong as the largest sphere and cylinder together. */
@@ -54,7 +58,22 @@ export function compilePriceBook(book: PriceBook): CompiledPriceBook {
     paymentPlans: byId(book.paymentPlans),
     secondEye: new Map(book.secondEye.map((rule) => [pairKey(...rule.procedureIds), rule])),
     bands: compileBands(book),
+    words: {
+      deposit:
+        book.deposit.charge.kind === 'rate'
+          ? `deposit, ${formatRate(book.deposit.charge.rateBp)}`
+          : 'deposit',
+      balance: daysBeforeWords(book.balanceDueDays),
+      moves: movesWords(book),
+    },
   };
+}
+
+function movesWords(book: PriceBook): string {
+  const { freeMoves, fee } = book.cancellation.reschedule;
+  const cost = fee.kind === 'rate' ? formatRate(fee.rateBp) : formatAmount(fee.amountMinor, book.currency);
+  if (freeMoves === 0) return `${cost} an eye`;
+  return `${freeMoves === 1 ? 'once' : `${freeMoves} times`} free, then ${cost} an eye`;
 }
 
 /** Ids of all rules in the order of the book, which is the order of its lines. */

@@ -110,6 +110,8 @@ export interface QuoteLine {
   readonly row: string;
   readonly kind: LineKind;
   readonly ruleId: string;
+  /** Line of the rule in the book, from 1. */
+  readonly ruleLine: number;
   /** Name of the row: "Surgery", "Cylinder 1.50 and over". */
   readonly label: string;
   /** What is particular to this line: the procedure's name, "needed with this cylinder", "4 %, badge seen". */
@@ -297,6 +299,4 @@ export interface PricedCourse {
   readonly package: PackageComparison | null;
   readonly approvals: readonly ApprovalNeeded[];
   readonly warnings: readonly Warning[];
-  /** Canonical JSON of engine, book version and input: hash it to recognise the same quote. */
-  readonly contentKey: string;
 }

@@ -1,4 +1,4 @@
-import type { Eye } from '#domain/eye';
+import { EYES, type Eye } from '#domain/eye';
 import { applyRate, type Minor, subtract, ZERO } from '#domain/money/index';
 import {
   formatDioptres,
@@ -7,21 +7,20 @@ import {
   sphericalEquivalentMd,
 } from '#domain/prescription/index';
 import { addMonths, type ClinicDate, formatDay } from '#domain/time/index';
+import { coverOf } from './aftercare.ts';
 import type { WantedCourse } from './check-input.ts';
 import type { CoverTerms } from './course.ts';
-import { aftercareOf } from './parts.ts';
 import type { EnhancementCover } from './price-book.ts';
 
 /** The cover each eye gets, in the order of the chart. */
 export function coverTerms(wanted: WantedCourse): CoverTerms[] {
-  const { coverOf } = aftercareOf(wanted);
-  return [...wanted.eyes]
-    .sort((a, b) => (a.eye < b.eye ? -1 : 1))
-    .flatMap((eye) => {
-      const coverId = coverOf(eye);
-      const cover = coverId === null ? undefined : wanted.compiled.covers.get(coverId);
-      return cover ? [termsOf(cover, eye.eye, eye.on)] : [];
-    });
+  const terms: CoverTerms[] = [];
+  for (const side of EYES) {
+    const eye = wanted.eyes.find((each) => each.eye === side);
+    const cover = eye ? coverOf(wanted, eye) : null;
+    if (eye && cover) terms.push(termsOf(cover, side, eye.on));
+  }
+  return terms;
 }
 
 function termsOf(cover: EnhancementCover, eye: Eye, surgeryOn: ClinicDate | null): CoverTerms {

@@ -5,7 +5,7 @@
  *   quoteCourse(input: CourseInput, book: PriceBook | CompiledPriceBook): QuoteResult
  *     → { ok: true, course: PricedCourse } | { ok: false, refusals: Refusal[] }
  *   compilePriceBook(book: PriceBook): CompiledPriceBook          once per version; look-ups do not grow with the book
- *   explainLine(line: QuoteLine, course: PricedCourse): Explanation   what the margin shows for a figure
+ *   explainLine(line: QuoteLine, course: PricedCourse)   : Derivation    what the margin shows for a figure
  *   validatePriceBook(book: PriceBook): BookFinding[]             what is wrong with a draft, explained
  *   diffPriceBooks(a: PriceBook, b: PriceBook): BookChange[]      a draft against the book in force, rule by rule
  *   keptByLadder(ladder, {event, on, acceptedOn, surgeryOn, shareMinor}): Kept   what is kept of one eye
@@ -29,6 +29,5 @@ export * from './explain.ts';
 export { type CancellationEvent, type Kept, keptByLadder } from './ladder.ts';
 export * from './price-book.ts';
 export { contentKey, ENGINE_VERSION, quoteCourse } from './quote-course.ts';
-export { daysBeforeWords } from './schedule.ts';
 export { rateOn } from './taxes.ts';
 export * from './validate-book.ts';

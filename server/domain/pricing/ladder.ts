@@ -1,20 +1,9 @@
 import type { Eye } from '#domain/eye';
-import {
-  add,
-  formatAmount,
-  greatest,
-  least,
-  type Minor,
-  minor,
-  subtract,
-  sum,
-  ZERO,
-} from '#domain/money/index';
+import { add, greatest, least, type Minor, subtract, sum, ZERO } from '#domain/money/index';
 import { addDays, type ClinicDate, daysBetween } from '#domain/time/index';
 import type { WantedCourse } from './check-input.ts';
 import type { ByColumn, CancellationRow, Due } from './course.ts';
-import { formatRate } from './explain.ts';
-import { chargeOf } from './parts.ts';
+import { chargeOf } from './part.ts';
 import type { CancellationLadder, Charge } from './price-book.ts';
 import { askedBefore } from './schedule.ts';
 
@@ -69,21 +58,21 @@ export function cancellationRows(
   shares: ByColumn,
   schedule: readonly Due[],
 ): CancellationRow[] {
-  const ladder = wanted.compiled.book.cancellation;
   const fates = wanted.eyes.map(({ eye, on }, index): Fate => {
     const share = index === 0 ? add(shares[eye], shares.OU) : shares[eye];
     return { eye, on, shareMinor: greatest(share, ZERO) };
   });
-  const dated = fates.every(({ on }) => on !== null);
+  const rows: CancellationRow[] = [];
   const reflection = reflectionRow(wanted, fates, schedule);
-  const after = reflection?.until ?? null;
-  return [
-    ...(reflection ? [reflection] : []),
-    ...(dated ? datedRows(wanted, fates, schedule, after) : undatedRows(wanted, fates, schedule)),
+  if (reflection) rows.push(reflection);
+  if (fates.some(({ on }) => on === null)) addUndatedRows(rows, wanted, fates, schedule);
+  else addDatedRows(rows, wanted, fates, schedule, reflection?.until ?? addDays(wanted.acceptedOn, -1));
+  rows.push(
     free('unsuitable', 'Found unsuitable'),
     free('clinic_cancels', 'The clinic cancels'),
-    movesRow(ladder, fates, wanted),
-  ];
+    movesRow(wanted, fates),
+  );
+  return rows;
 }
 
 function reflectionRow(
@@ -108,24 +97,25 @@ function reflectionRow(
   };
 }
 
-/** One row for every day on which the sum kept changes, then the day itself. */
-function datedRows(
+/** One row for every day on which the sum kept changes, the days of surgery among them. */
+function addDatedRows(
+  rows: CancellationRow[],
   wanted: WantedCourse,
   fates: readonly Fate[],
   schedule: readonly Due[],
-  after: ClinicDate | null,
-): CancellationRow[] {
-  const ladder = wanted.compiled.book.cancellation;
-  const days = new Set<ClinicDate>();
+  after: ClinicDate,
+): void {
+  const days: ClinicDate[] = [];
+  const note = (day: ClinicDate) => {
+    if (day > after && !days.includes(day)) days.push(day);
+  };
   for (const { on } of fates) {
-    for (const { minDaysBefore } of ladder.rungs) if (on) days.add(addDays(on, -minDaysBefore));
-    if (on) days.add(on);
+    if (on === null) continue;
+    for (const { minDaysBefore } of wanted.compiled.book.cancellation.rungs)
+      note(addDays(on, -minDaysBefore));
+    note(on);
   }
-  const from = after ?? addDays(wanted.acceptedOn, -1);
-  return [...days]
-    .filter((day) => day > from)
-    .sort()
-    .flatMap((until) => datedRow(wanted, fates, schedule, until) ?? []);
+  for (const until of days.sort()) rows.push(datedRow(wanted, fates, schedule, until));
 }
 
 function datedRow(
@@ -133,64 +123,67 @@ function datedRow(
   fates: readonly Fate[],
   schedule: readonly Due[],
   until: ClinicDate,
-): CancellationRow | null {
-  const ladder = wanted.compiled.book.cancellation;
-  const open = fates.filter(({ on }) => on !== null && on >= until);
-  const noShow = open.some(({ on }) => on === until);
-  const kept = open.map(({ on, shareMinor }) =>
-    keptByLadder(ladder, {
-      event: on === until ? 'no_show' : 'cancels',
-      on: until,
-      acceptedOn: wanted.acceptedOn,
-      surgeryOn: on,
-      shareMinor,
-    }),
-  );
-  const keptMinor = sum(kept.map((each) => each.keptMinor));
-  const done = sum(fates.filter(({ on }) => on !== null && on < until).map((fate) => fate.shareMinor));
-  const paidMinor = askedBefore(schedule, noShow ? addDays(until, 1) : until, wanted.acceptedOn);
-  const back = subtract(subtract(paidMinor, done), keptMinor);
-  const only = open.length < fates.length ? `, ${open[0]?.eye === 'OD' ? 'right' : 'left'} eye only` : '';
+): CancellationRow {
+  const { acceptedOn, compiled } = wanted;
+  let keptMinor = ZERO;
+  let done = ZERO;
+  let nearest = Number.POSITIVE_INFINITY;
+  let open: Fate | null = null;
+  for (const fate of fates) {
+    const { on: surgeryOn, shareMinor } = fate;
+    if (surgeryOn === null || surgeryOn < until) {
+      done = add(done, shareMinor);
+      continue;
+    }
+    open = fate;
+    nearest = Math.min(nearest, daysBetween(until, surgeryOn));
+    const event = surgeryOn === until ? 'no_show' : 'cancels';
+    const { cancellation } = compiled.book;
+    const kept = keptByLadder(cancellation, { event, on: until, acceptedOn, surgeryOn, shareMinor });
+    keptMinor = add(keptMinor, kept.keptMinor);
+  }
+  const onTheDay = nearest === 0;
+  const paidMinor = askedBefore(schedule, onTheDay ? addDays(until, 1) : until, acceptedOn);
+  const only = done > 0 && open ? (open.eye === 'OD' ? ', right eye only' : ', left eye only') : '';
   return {
-    event: noShow ? 'no_show' : 'cancels',
+    event: onTheDay ? 'no_show' : 'cancels',
     until,
-    label: noShow ? `Does not come${only}` : `Cancels${only}`,
-    detail: noShow ? 'on the day' : daysWords(until, open),
+    label: (onTheDay ? 'Does not come' : 'Cancels') + only,
+    detail: onTheDay ? 'on the day' : orMoreWords(nearest),
     keptMinor,
     paidMinor,
-    comesBackMinor: greatest(back, ZERO),
+    comesBackMinor: greatest(subtract(subtract(paidMinor, done), keptMinor), ZERO),
   };
 }
 
-function daysWords(until: ClinicDate, open: readonly Fate[]): string {
-  const days = open.map(({ on }) => (on === null ? 0 : daysBetween(until, on)));
-  const nearest = Math.min(...days);
-  return `${nearest} ${nearest === 1 ? 'day' : 'days'} or more before surgery`;
+function orMoreWords(days: number): string {
+  return days === 1 ? '1 day or more before surgery' : `${days} days or more before surgery`;
 }
 
 /** The same while no day is agreed: by days before surgery, with what is due by then. */
-function undatedRows(
+function addUndatedRows(
+  rows: CancellationRow[],
   wanted: WantedCourse,
   fates: readonly Fate[],
   schedule: readonly Due[],
-): CancellationRow[] {
+): void {
   const { cancellation, balanceDueDays } = wanted.compiled.book;
-  return cancellation.rungs.map(({ minDaysBefore, kept }) => {
+  for (const { minDaysBefore, kept } of cancellation.rungs) {
     const keptMinor = sum(fates.map(({ shareMinor }) => least(chargeOf(kept, shareMinor), shareMinor)));
     const asked = schedule.filter(
       (due) => due.kind === 'deposit' || (due.dueOn === null && minDaysBefore < balanceDueDays),
     );
     const paidMinor = sum(asked.map((due) => due.amountMinor));
-    return {
+    rows.push({
       event: 'cancels',
       until: null,
       label: 'Cancels',
-      detail: `${minDaysBefore} ${minDaysBefore === 1 ? 'day' : 'days'} or more before surgery`,
+      detail: orMoreWords(minDaysBefore),
       keptMinor,
       paidMinor,
       comesBackMinor: greatest(subtract(paidMinor, keptMinor), ZERO),
-    };
-  });
+    });
+  }
 }
 
 function free(event: 'unsuitable' | 'clinic_cancels', label: string): CancellationRow {
@@ -205,20 +198,15 @@ function free(event: 'unsuitable' | 'clinic_cancels', label: string): Cancellati
   };
 }
 
-function movesRow(ladder: CancellationLadder, fates: readonly Fate[], wanted: WantedCourse): CancellationRow {
-  const { freeMoves, fee } = ladder.reschedule;
-  const keptMinor = sum(fates.map(({ shareMinor }) => least(chargeOf(fee, shareMinor), shareMinor)));
-  const times = freeMoves === 1 ? 'once free' : `${freeMoves} times free`;
-  const cost =
-    fee.kind === 'rate'
-      ? formatRate(fee.rateBp)
-      : formatAmount(fee.amountMinor, wanted.compiled.book.currency);
+function movesRow(wanted: WantedCourse, fates: readonly Fate[]): CancellationRow {
+  const { freeMoves, fee } = wanted.compiled.book.cancellation.reschedule;
+  const fees = fates.map(({ shareMinor }) => least(chargeOf(fee, shareMinor), shareMinor));
   return {
     event: 'moves',
     until: null,
     label: 'Moves the day',
-    detail: `${freeMoves === 0 ? '' : `${times}, then `}${cost} an eye`,
-    keptMinor: freeMoves === 0 ? keptMinor : minor(0),
+    detail: wanted.compiled.words.moves,
+    keptMinor: freeMoves === 0 ? sum(fees) : ZERO,
     paidMinor: null,
     comesBackMinor: null,
   };

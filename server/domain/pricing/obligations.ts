@@ -1,28 +1,30 @@
 import type { Laterality } from '#domain/eye';
 import { add, type Minor, minor, splitByWeights, splitEvenly, ZERO } from '#domain/money/index';
 import { allocateByStandAlone } from '#domain/obligations/index';
+import { followUpsOf } from './aftercare.ts';
 import type { WantedCourse } from './check-input.ts';
 import type { Obligation, ObligationKind, ObligationPart } from './course.ts';
-import { aftercareOf, type Promised } from './parts.ts';
+import type { Part, Promised } from './part.ts';
 
 /** The order in which obligations stand and odd cents are handed out. */
-const ORDER: readonly ObligationKind[] = [
-  'assessment',
-  'surgery',
-  'aftercare',
-  'enhancement',
-  'service',
-  'goods',
-];
+const ORDER: Readonly<Record<ObligationKind, number>> = {
+  assessment: 0,
+  surgery: 1,
+  aftercare: 2,
+  enhancement: 3,
+  service: 4,
+  goods: 5,
+  instalment_charge: 6,
+};
+const COLUMNS: readonly Laterality[] = ['OD', 'OS', 'OU'];
 
 interface Gathered {
-  readonly id: string;
-  readonly kind: ObligationKind;
-  readonly label: string;
-  readonly laterality: Laterality;
-  readonly standAloneMinor: Minor;
-  /** What stands behind it, per column, in the order OD, OS, OU. */
-  readonly weights: readonly { readonly laterality: Laterality; readonly standAloneMinor: Minor }[];
+  readonly first: Promised;
+  standAlone: Minor;
+  /** Stand-alone prices of what stands behind it, per column; null where nothing does. */
+  readonly OD: Minor | null;
+  readonly OS: Minor | null;
+  readonly OU: Minor | null;
 }
 
 /**
@@ -35,88 +37,101 @@ export function obligationsOf(
   withoutTaxMinor: Minor,
 ): Obligation[] {
   const gathered = gather(promises);
-  const policy = wanted.compiled.book.allocationPolicy;
-  const weights = gathered.map((each) =>
-    policy === 'A' && each.kind !== 'surgery' ? ZERO : each.standAloneMinor,
+  const onlySurgery = wanted.compiled.book.allocationPolicy === 'A';
+  const weights = gathered.map(({ first, standAlone }) =>
+    onlySurgery && first.kind !== 'surgery' ? ZERO : standAlone,
   );
+  if (weights.every((weight) => weight === 0)) {
+    for (const [index, { first }] of gathered.entries())
+      if (first.kind === 'surgery') weights[index] = minor(1);
+  }
   const allocated = allocateByStandAlone(withoutTaxMinor, weights);
   return gathered.map((each, index) => {
     const allocatedMinor = allocated[index] ?? ZERO;
-    const { id, kind, label, laterality, standAloneMinor } = each;
+    const columns = COLUMNS.filter((column) => each[column] !== null);
     return {
-      id,
-      kind,
-      label,
-      laterality,
-      standAloneMinor,
+      id: each.first.obligationId,
+      kind: each.first.kind,
+      label: each.first.label,
+      laterality: columns.length === 1 ? each.first.laterality : 'OU',
+      standAloneMinor: each.standAlone,
       allocatedMinor,
-      parts: partsOf(each, allocatedMinor, wanted),
+      parts: partsOf(each, columns, allocatedMinor, wanted),
     };
   });
 }
 
 function gather(promises: readonly Promised[]): Gathered[] {
-  const byId = new Map<string, Promised[]>();
+  const found: Gathered[] = [];
   for (const promise of promises) {
-    const group = byId.get(promise.obligationId);
-    if (group) group.push(promise);
-    else byId.set(promise.obligationId, [promise]);
+    let open = found.find(({ first }) => first.obligationId === promise.obligationId);
+    if (!open) {
+      open = { first: promise, standAlone: ZERO, OD: null, OS: null, OU: null };
+      found.push(open);
+    }
+    open.standAlone = add(open.standAlone, promise.standAloneMinor);
+    const column: { -readonly [Column in Laterality]: Minor | null } = open;
+    column[promise.laterality] = add(column[promise.laterality] ?? ZERO, promise.standAloneMinor);
   }
-  const columns: readonly Laterality[] = ['OD', 'OS', 'OU'];
-  return [...byId]
-    .flatMap(([id, group]): Gathered[] => {
-      const [first] = group;
-      if (!first) return [];
-      const weights = columns.flatMap((laterality) => {
-        const mine = group.filter((promise) => promise.laterality === laterality);
-        if (mine.length === 0) return [];
-        return [
-          {
-            laterality,
-            standAloneMinor: mine.reduce((total, each) => add(total, each.standAloneMinor), ZERO),
-          },
-        ];
-      });
-      const standAloneMinor = weights.reduce((total, each) => add(total, each.standAloneMinor), ZERO);
-      const laterality = weights.length === 1 ? first.laterality : 'OU';
-      return [{ id, kind: first.kind, label: first.label, laterality, standAloneMinor, weights }];
-    })
-    .sort((a, b) => ORDER.indexOf(a.kind) - ORDER.indexOf(b.kind) || (a.id < b.id ? -1 : 1));
+  return found.sort(
+    (a, b) =>
+      ORDER[a.first.kind] - ORDER[b.first.kind] || (a.first.obligationId < b.first.obligationId ? -1 : 1),
+  );
 }
 
 /** Aftercare is delivered visit by visit, everything else eye by eye where it belongs to eyes. */
-function partsOf(gathered: Gathered, allocatedMinor: Minor, wanted: WantedCourse): ObligationPart[] {
-  const { id, label, weights } = gathered;
-  const even = weights.every(({ standAloneMinor }) => standAloneMinor === 0);
-  const shares = splitByWeights(
-    allocatedMinor,
-    even ? weights.map(() => 1) : weights.map((w) => w.standAloneMinor),
-  );
-  if (gathered.kind === 'aftercare') {
-    return weights.flatMap(({ laterality }, index) => visits(wanted, laterality, shares[index] ?? ZERO));
+function partsOf(
+  gathered: Gathered,
+  columns: readonly Laterality[],
+  allocatedMinor: Minor,
+  wanted: WantedCourse,
+): ObligationPart[] {
+  const { obligationId: id, kind, label } = gathered.first;
+  const weights = columns.map((column) => (gathered.standAlone === 0 ? 1 : (gathered[column] ?? 0)));
+  const shares = columns.length === 1 ? [allocatedMinor] : splitByWeights(allocatedMinor, weights);
+  const parts: ObligationPart[] = [];
+  for (const [index, laterality] of columns.entries()) {
+    const amountMinor = shares[index] ?? ZERO;
+    if (kind === 'aftercare') addVisits(parts, wanted, laterality, amountMinor);
+    else
+      parts.push({ id: columns.length === 1 ? id : `${id}:${laterality}`, label, laterality, amountMinor });
   }
-  return weights.map(({ laterality }, index) => ({
-    id: weights.length === 1 ? id : `${id}:${laterality}`,
-    label,
-    laterality,
-    amountMinor: shares[index] ?? minor(0),
-  }));
+  return parts;
 }
 
-function visits(wanted: WantedCourse, laterality: Laterality, amountMinor: Minor): ObligationPart[] {
-  const schedules = aftercareOf(wanted).followUpIds.map((id) => wanted.compiled.followUps.get(id));
+function addVisits(
+  parts: ObligationPart[],
+  wanted: WantedCourse,
+  laterality: Laterality,
+  amount: Minor,
+): void {
+  const schedules = followUpsOf(wanted);
   const eye = wanted.eyes.find((each) => each.eye === laterality);
+  const per = eye ? 'eye' : 'course';
   const schedule =
-    schedules.find(
-      (found) => found?.per === (eye ? 'eye' : 'course') && (!eye || found.id === eye.procedure.followUpId),
-    ) ?? schedules[0];
-  const labels =
-    schedule && schedule.visits.length > 0 ? schedule.visits.map((visit) => visit.label) : ['Aftercare'];
+    schedules.find((each) => each.per === per && (!eye || each.id === eye.procedure.followUpId)) ??
+    schedules[0];
+  const visits = schedule?.visits ?? [];
+  const amounts = splitEvenly(amount, Math.max(visits.length, 1));
   const id = eye ? `aftercare:${laterality}` : 'aftercare';
-  return splitEvenly(amountMinor, labels.length).map((part, index) => ({
-    id: `${id}:${index + 1}`,
-    label: labels[index] ?? '',
-    laterality,
-    amountMinor: part,
-  }));
+  for (const [index, amountMinor] of amounts.entries()) {
+    const label = visits[index]?.label ?? 'Aftercare';
+    parts.push({ id: `${id}:${index + 1}`, label, laterality, amountMinor });
+  }
+}
+
+/** The charge for paying over time is a promise of its own, at its own price. */
+export function chargeObligation(charge: Part): Obligation {
+  const id = 'instalment-charge';
+  const { label } = charge.words;
+  const amountMinor = charge.withoutTaxMinor;
+  return {
+    id,
+    kind: 'instalment_charge',
+    label,
+    laterality: 'OU',
+    standAloneMinor: amountMinor,
+    allocatedMinor: amountMinor,
+    parts: [{ id, label, laterality: 'OU', amountMinor }],
+  };
 }

@@ -14,12 +14,13 @@ import type {
 import { coverTerms } from './cover.ts';
 import { annuityCharge, creditTerms } from './credit.ts';
 import { cancellationRows } from './ladder.ts';
-import { obligationsOf } from './obligations.ts';
-import { type Part, ruleStep, textStep } from './parts.ts';
+import { columnsOf, linesOf } from './lines.ts';
+import { chargeObligation, obligationsOf } from './obligations.ts';
+import { newPart, type Part } from './part.ts';
 import type { PaymentPlan, PriceBook } from './price-book.ts';
-import { columnsOf, inReadingOrder, linesOf, type PricedParts, priceParts } from './price-parts.ts';
+import { type PricedParts, priceParts } from './price-parts.ts';
 import { depositOf, scheduleOf } from './schedule.ts';
-import { type TaxedPart, taxLines, taxParts, taxRefusals, taxTotals } from './taxes.ts';
+import { taxParts, taxRefusals, taxTotals } from './taxes.ts';
 import { approvalsOf, includedOf, notIncludedOf, standingOf, validUntil, warningsOf } from './terms.ts';
 
 /** Changes whenever the same input and book could give other bytes; part of every content key. */
@@ -47,8 +48,8 @@ interface Paying {
   readonly ok: true;
   readonly depositMinor: Minor;
   readonly credit: CreditTerms | null;
-  /** Instalment charge as a line of its own. */
-  readonly charge: TaxedPart | null;
+  /** Instalment charge as a part of its own. */
+  readonly charge: Part | null;
 }
 
 /** Deposit, credit and what the credit costs, by the plan of payment. */
@@ -56,66 +57,46 @@ function payingFor(
   wanted: WantedCourse,
   priceMinor: Minor,
 ): Paying | { readonly ok: false; readonly refusals: Refusal[] } {
-  const { plan, compiled } = wanted;
+  const { plan, compiled, acceptedOn } = wanted;
   const usual = depositOf(compiled.book.deposit, priceMinor);
   if (plan === null) return { ok: true, depositMinor: usual, credit: null, charge: null };
   const depositMinor = plan.takesDeposit ? usual : ZERO;
   const credit = subtract(priceMinor, depositMinor);
   if (priceMinor < plan.leastMinor || credit <= 0) {
     const words = `${plan.label} is for larger sums.`;
-    const refusal = {
-      field: 'paymentPlanId',
-      code: 'plan_needs_more' as const,
-      words,
-      change: 'Choose another plan.',
+    return {
+      ok: false,
+      refusals: [{ field: 'paymentPlanId', code: 'plan_needs_more', words, change: 'Choose another plan.' }],
     };
-    return { ok: false, refusals: [refusal] };
   }
   if (plan.kind !== 'fee_bearing') {
-    const chargeMinor = plan.kind === 'lender' ? annuityCharge(credit, plan.rateBp, plan.instalments) : ZERO;
-    return {
-      ok: true,
-      depositMinor,
-      credit: creditTerms(plan, credit, chargeMinor, wanted.acceptedOn),
-      charge: null,
-    };
+    const cost = plan.kind === 'lender' ? annuityCharge(credit, plan.rateBp, plan.instalments) : ZERO;
+    return { ok: true, depositMinor, credit: creditTerms(plan, credit, cost, acceptedOn), charge: null };
   }
-  const part = chargePart(wanted, plan, annuityCharge(credit, plan.rateBp, plan.instalments));
-  const refusals = taxRefusals(wanted, [part]);
+  const charge = chargePart(plan, annuityCharge(credit, plan.rateBp, plan.instalments));
+  const refusals = taxRefusals(wanted, [charge]);
   if (refusals.length > 0) return { ok: false, refusals };
-  const charge = taxParts(wanted, [part])[0] ?? null;
-  const chargeMinor = charge?.payableMinor ?? ZERO;
+  taxParts(wanted, [charge]);
   return {
     ok: true,
     depositMinor,
-    credit: creditTerms(plan, credit, chargeMinor, wanted.acceptedOn),
+    credit: creditTerms(plan, credit, charge.payableMinor, acceptedOn),
     charge,
   };
 }
 
-function chargePart(
-  wanted: WantedCourse,
-  plan: Extract<PaymentPlan, { kind: 'fee_bearing' }>,
-  amountMinor: Minor,
-): Part {
-  return {
+function chargePart(plan: Extract<PaymentPlan, { kind: 'fee_bearing' }>, amountMinor: Minor): Part {
+  const words = {
     row: `instalment-charge:${plan.id}`,
     kind: 'instalment_charge',
     ruleId: plan.id,
     label: 'Instalment charge',
     detail: plan.label,
-    laterality: 'OU',
-    taxClassId: plan.taxClassId,
-    grossMinor: amountMinor,
-    netMinor: amountMinor,
-    promise: null,
-    isSurgery: false,
-    why: [
-      textStep('Instalments', String(plan.instalments)),
-      { label: 'Nominal yearly rate', value: { kind: 'rate', rateBp: plan.rateBp } },
-      ruleStep(wanted, plan.id),
-    ],
-  };
+  } as const;
+  return newPart(words, 'OU', plan.taxClassId, amountMinor, null, [
+    { label: 'Instalments', text: String(plan.instalments) },
+    { label: 'Nominal yearly rate', rateBp: plan.rateBp },
+  ]);
 }
 
 function assemble(
@@ -126,11 +107,10 @@ function assemble(
 ): PricedCourse {
   const { input, compiled } = wanted;
   const { book } = compiled;
-  const priced = charge ? { ...before, parts: [...before.parts, charge] } : before;
-  const totalMinor = add(before.totalMinor, charge?.payableMinor ?? ZERO);
+  const priced = charge ? withCharge(before, charge) : before;
   const taxes = taxTotals(wanted, priced.parts);
   const { columns, shares } = columnsOf(priced);
-  const schedule = scheduleOf(wanted, depositMinor, totalMinor, shares, credit);
+  const schedule = scheduleOf(wanted, depositMinor, priced.totalMinor, shares, credit);
   return {
     engine: ENGINE_VERSION,
     book: { id: book.id, version: book.version, inForceFrom: book.inForceFrom },
@@ -138,13 +118,13 @@ function assemble(
     standing: standingOf(wanted),
     quotedOn: input.quotedOn,
     validUntil: validUntil(input.quotedOn, book.validityDays),
-    lines: inReadingOrder([...linesOf(priced), ...taxLines(wanted, priced.parts)], compiled.lineOf),
+    lines: linesOf(priced, compiled),
     columns,
     shares,
     taxes,
     netMinor: sum(taxes.map((tax) => tax.netMinor)),
     taxMinor: sum(taxes.map((tax) => tax.taxMinor)),
-    totalMinor,
+    totalMinor: priced.totalMinor,
     depositMinor,
     schedule,
     credit,
@@ -156,35 +136,33 @@ function assemble(
     package: comparison,
     approvals: approvalsOf(wanted),
     warnings: warningsOf(wanted, comparison, credit),
-    contentKey: contentKey(input, book),
+  };
+}
+
+function withCharge(before: PricedParts, charge: Part): PricedParts {
+  return {
+    parts: before.parts.concat(charge),
+    reductions: before.reductions,
+    promises: before.promises,
+    totalMinor: add(before.totalMinor, charge.payableMinor),
+    packageWeights: before.packageWeights,
   };
 }
 
 /** The ladder keeps a share of the price, never of what credit would have cost. */
-function withoutCharge(shares: ByColumn, charge: TaxedPart | null): ByColumn {
-  return charge ? { ...shares, OU: subtract(shares.OU, charge.payableMinor) } : shares;
+function withoutCharge(shares: ByColumn, charge: Part | null): ByColumn {
+  return charge ? { OD: shares.OD, OS: shares.OS, OU: subtract(shares.OU, charge.payableMinor) } : shares;
 }
 
-function promised(wanted: WantedCourse, before: PricedParts, charge: TaxedPart | null): Obligation[] {
-  const withoutTax = sum(before.parts.map((part) => part.withoutTaxMinor));
+function promised(wanted: WantedCourse, before: PricedParts, charge: Part | null): Obligation[] {
+  let withoutTax = ZERO;
+  for (const part of before.parts) withoutTax = add(withoutTax, part.withoutTaxMinor);
   const obligations = obligationsOf(wanted, before.promises, withoutTax);
-  if (!charge) return obligations;
-  const amountMinor = charge.withoutTaxMinor;
-  const id = 'instalment-charge';
-  const common = { id, label: charge.label, laterality: 'OU' } as const;
-  return [
-    ...obligations,
-    {
-      ...common,
-      kind: 'instalment_charge',
-      standAloneMinor: amountMinor,
-      allocatedMinor: amountMinor,
-      parts: [{ ...common, amountMinor }],
-    },
-  ];
+  if (charge) obligations.push(chargeObligation(charge));
+  return obligations;
 }
 
-/** What a course's hash is made of: engine, version of the book, input. */
+/** What the hash of a quote is made of: engine, version of the book, input. The same key, the same course. */
 export function contentKey(input: CourseInput, book: Pick<PriceBook, 'id' | 'version'>): string {
   return canonicalJson({ engine: ENGINE_VERSION, book: { id: book.id, version: book.version }, input });
 }

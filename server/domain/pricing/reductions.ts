@@ -1,20 +1,20 @@
-import { applyRate, formatAmount, type Minor, minor, splitByWeights, sum } from '#domain/money/index';
+import { applyRate, formatAmount, least, type Minor, splitByWeights, ZERO } from '#domain/money/index';
+import { daysBetween } from '#domain/time/index';
 import type { ChosenDiscount } from './check-discounts.ts';
 import type { WantedCourse } from './check-input.ts';
-import { formatRate } from './explain.ts';
-import {
-  chargeOf,
-  daysApart,
-  moneyStep,
-  type Part,
-  type Reduction,
-  ruleStep,
-  takeOff,
-  textStep,
-} from './parts.ts';
+import { formatRate, type Step } from './explain.ts';
+import { chargeOf, type LineWords, type Part, type Reduction, takeOff } from './part.ts';
+import { netOf } from './parts.ts';
 import type { Package, Scope } from './price-book.ts';
 
-/** Why the second eye costs less, or null when nothing applies. */
+/** Days between the two surgeries, null where a day is missing. */
+export function daysApart(wanted: WantedCourse): number | null {
+  const [first, second] = wanted.eyes;
+  if (!first?.on || !second?.on) return null;
+  return daysBetween(first.on, second.on);
+}
+
+/** What comes off the second eye and why, or null when nothing applies. */
 function secondEyeTerms(wanted: WantedCourse) {
   const rule = wanted.secondEyeRule;
   if (!rule) return null;
@@ -27,46 +27,35 @@ function secondEyeTerms(wanted: WantedCourse) {
 }
 
 /** The second-eye rule, taken off the surgery of the second eye. */
-export function secondEyeReductions(wanted: WantedCourse, parts: readonly Part[]): Reduction[] {
+export function reduceSecondEye(wanted: WantedCourse, parts: readonly Part[], into: Reduction[]): void {
   const terms = secondEyeTerms(wanted);
   const second = wanted.eyes[1];
-  const part = parts.find((found) => found.kind === 'procedure' && found.laterality === second?.eye);
-  if (!terms || !wanted.secondEyeRule || !part || !second) return [];
-  const fromMinor = part.netMinor;
-  const offMinor = takeOff(part, chargeOf(terms.off, part.grossMinor));
-  const why = [textStep('Second eye', second.eye === 'OD' ? 'right' : 'left')];
-  why.push(
-    textStep(
-      'Because it is',
-      wanted.staged ? 'the later one' : 'the one with the lower price, or either of equals',
-    ),
-  );
-  if (terms.apart !== null) why.push(textStep('Days apart', String(terms.apart)));
-  if (terms.off.kind === 'rate') {
-    why.push({
-      label: `Off its ${second.procedure.label}`,
-      value: { kind: 'rate', rateBp: terms.off.rateBp },
-    });
-    why.push(moneyStep('Of', part.grossMinor));
-  }
-  return [
+  const part = parts.find((found) => found.words.kind === 'procedure' && found.laterality === second?.eye);
+  if (!terms || !wanted.secondEyeRule || !part || !second) return;
+  const why: Step[] = [
+    { label: 'Second eye', text: second.eye === 'OD' ? 'right' : 'left' },
     {
-      row: 'second-eye',
-      kind: 'second_eye',
-      ruleId: wanted.secondEyeRule.id,
-      label: terms.label,
-      detail: terms.off.kind === 'rate' ? formatRate(terms.off.rateBp) : null,
-      part,
-      fromMinor,
-      offMinor,
-      why: [...why, ruleStep(wanted, wanted.secondEyeRule.id)],
+      label: 'Because it is',
+      text: wanted.staged ? 'the later one' : 'the one with the lower price, or either of equals',
     },
   ];
+  if (terms.apart !== null) why.push({ label: 'Days apart', text: String(terms.apart) });
+  if (terms.off.kind === 'rate')
+    why.push({ label: `Off its ${second.procedure.label}`, rateBp: terms.off.rateBp });
+  const words = {
+    row: 'second-eye',
+    kind: 'second_eye',
+    ruleId: wanted.secondEyeRule.id,
+    label: terms.label,
+    detail: terms.off.kind === 'rate' ? formatRate(terms.off.rateBp) : null,
+  } as const;
+  into.push({ words, part, offMinor: takeOff(part, chargeOf(terms.off, part.grossMinor)), why });
 }
 
 /** True for a part that a package includes. */
 export function isCovered(part: Part, chosen: Package): boolean {
-  switch (part.kind) {
+  const { kind, ruleId } = part.words;
+  switch (kind) {
     case 'procedure':
       return true;
     case 'band':
@@ -74,99 +63,93 @@ export function isCovered(part: Part, chosen: Package): boolean {
     case 'aftercare':
       return chosen.includes.aftercare;
     case 'cover':
-      return chosen.includes.coverId === part.ruleId;
+      return chosen.includes.coverId === ruleId;
     case 'add_on':
-      return chosen.includes.addOnIds.includes(part.ruleId);
+      return chosen.includes.addOnIds.includes(ruleId);
     default:
       return false;
   }
 }
 
 /** A package priced at a rate off its parts: the rate comes off each of them. */
-export function packageReductions(
-  wanted: WantedCourse,
-  chosen: Package,
-  parts: readonly Part[],
-): Reduction[] {
-  if (chosen.price.kind !== 'rate') return [];
+export function reduceByPackage(chosen: Package, parts: readonly Part[], into: Reduction[]): void {
+  if (chosen.price.kind !== 'rate') return;
   const { rateBp } = chosen.price;
-  const what = {
+  const words = {
     row: `package:${chosen.id}`,
     kind: 'package_rate',
     ruleId: chosen.id,
     label: chosen.label,
+    detail: formatRate(rateBp),
   } as const;
-  const covered = parts.filter((part) => isCovered(part, chosen));
-  return rateOff(wanted, { ...what, detail: formatRate(rateBp) }, rateBp, covered);
+  rateOff(
+    words,
+    rateBp,
+    parts.filter((part) => isCovered(part, chosen)),
+    into,
+  );
 }
 
 /** The patient's price list, where it is a rate. */
-export function priceListReductions(wanted: WantedCourse, parts: readonly Part[]): Reduction[] {
+export function reduceByPriceList(wanted: WantedCourse, parts: readonly Part[], into: Reduction[]): void {
   const list = wanted.priceList;
-  if (list?.rule.kind !== 'rate') return [];
+  if (list?.rule.kind !== 'rate') return;
   const { rateBp, scope } = list.rule;
   const rate = formatRate(rateBp);
-  const detail = list.evidence === null ? rate : `${rate}, ${list.evidence}`;
-  const what = {
+  const words = {
     row: `price-list:${list.id}`,
     kind: 'price_list',
     ruleId: list.id,
     label: list.label,
+    detail: list.evidence === null ? rate : `${rate}, ${list.evidence}`,
   } as const;
-  return rateOff(
-    wanted,
-    { ...what, detail },
-    rateBp,
-    parts.filter((part) => inScope(part, scope)),
-  );
+  rateOff(words, rateBp, inScope(parts, scope), into);
 }
 
 /** One discount, off what is left of the parts in its scope. */
-export function discountReductions(
+export function reduceByDiscount(
   wanted: WantedCourse,
   { rule, off }: ChosenDiscount,
   parts: readonly Part[],
-): Reduction[] {
-  const what = { row: `discount:${rule.id}`, kind: 'discount', ruleId: rule.id, label: rule.reason } as const;
+  into: Reduction[],
+): void {
+  const named = (detail: string): LineWords => ({
+    row: `discount:${rule.id}`,
+    kind: 'discount',
+    ruleId: rule.id,
+    label: rule.reason,
+    detail,
+  });
   if (off.kind === 'rate') {
     const scope = rule.off.kind === 'rate' ? rule.off.scope : 'surgery';
-    const touched = parts.filter((part) => inScope(part, scope));
-    return rateOff(wanted, { ...what, detail: formatRate(off.rateBp) }, off.rateBp, touched);
+    rateOff(named(formatRate(off.rateBp)), off.rateBp, inScope(parts, scope), into);
+    return;
   }
-  const touched = parts.filter((part) => part.isSurgery);
-  const most = sum(touched.map((part) => part.netMinor));
-  const amount = minor(Math.min(off.amountMinor, most));
-  const detail = formatAmount(amount, wanted.compiled.book.currency);
-  const shares = splitByWeights(
-    amount,
-    touched.map((part) => part.netMinor),
-  );
-  return touched.map((part, index) =>
-    reduce(part, shares[index] ?? minor(0), { ...what, detail }, [
-      moneyStep('Off the surgery', amount),
-      moneyStep('Shared out over', most),
-      ruleStep(wanted, rule.id),
-    ]),
-  );
-}
-
-type What = Pick<Reduction, 'row' | 'kind' | 'ruleId' | 'label' | 'detail'>;
-
-function rateOff(wanted: WantedCourse, what: What, rateBp: number, parts: readonly Part[]): Reduction[] {
-  const why = [
-    { label: what.label, value: { kind: 'rate', rateBp } as const },
-    ruleStep(wanted, what.ruleId),
+  const touched = inScope(parts, 'surgery');
+  const most = netOf(touched);
+  const amount = least(off.amountMinor, most);
+  const words = named(formatAmount(amount, wanted.compiled.book.currency));
+  const why: Step[] = [
+    { label: 'Off the surgery', amountMinor: amount },
+    { label: 'Shared out over', amountMinor: most },
   ];
-  return parts.map((part) => reduce(part, applyRate(part.netMinor, rateBp), what, why));
+  const weights = touched.map((part) => part.netMinor);
+  const shares = splitByWeights(amount, weights);
+  for (const [index, part] of touched.entries()) {
+    into.push({ words, part, offMinor: takeOff(part, shares[index] ?? ZERO), why });
+  }
 }
 
-function reduce(part: Part, off: Minor, what: What, why: Reduction['why']): Reduction {
-  const fromMinor = part.netMinor;
-  return { ...what, part, fromMinor, offMinor: takeOff(part, off), why };
+function rateOff(words: LineWords, rateBp: number, parts: readonly Part[], into: Reduction[]): void {
+  const why: Step[] = [{ label: words.label, rateBp }];
+  for (const part of parts) {
+    const off: Minor = applyRate(part.netMinor, rateBp);
+    into.push({ words, part, offMinor: takeOff(part, off), why });
+  }
 }
 
-function inScope(part: Part, scope: Scope): boolean {
-  if (scope === 'everything') return true;
-  if (scope === 'surgery') return part.isSurgery;
-  return scope.ruleIds.includes(part.ruleId);
+function inScope(parts: readonly Part[], scope: Scope): readonly Part[] {
+  if (scope === 'everything') return parts;
+  if (scope === 'surgery') return parts.filter((part) => part.isSurgery);
+  return parts.filter((part) => scope.ruleIds.includes(part.words.ruleId));
 }

@@ -2,8 +2,7 @@ import { add, greatest, least, type Minor, subtract, ZERO } from '#domain/money/
 import { addDays, type ClinicDate } from '#domain/time/index';
 import type { WantedCourse } from './check-input.ts';
 import type { ByColumn, CreditTerms, Due } from './course.ts';
-import { formatRate } from './explain.ts';
-import { chargeOf } from './parts.ts';
+import { chargeOf } from './part.ts';
 import type { DepositRule } from './price-book.ts';
 
 /** What is paid to accept: never under the floor, over the ceiling, or over the price itself. */
@@ -12,14 +11,6 @@ export function depositOf(rule: DepositRule, priceMinor: Minor): Minor {
   if (rule.floorMinor !== null) deposit = greatest(deposit, rule.floorMinor);
   if (rule.ceilingMinor !== null) deposit = least(deposit, rule.ceilingMinor);
   return least(deposit, priceMinor);
-}
-
-/** "a week before surgery", "10 days before surgery". */
-export function daysBeforeWords(days: number): string {
-  if (days === 0) return 'on the day of surgery';
-  if (days === 1) return 'the day before surgery';
-  if (days === 7) return 'a week before surgery';
-  return days % 7 === 0 ? `${days / 7} weeks before surgery` : `${days} days before surgery`;
 }
 
 /** Everything that falls due, in order; adds up to the total. Nothing falls due before the day of acceptance. */
@@ -37,16 +28,15 @@ export function scheduleOf(
       : credit.kind === 'lender'
         ? [lenderPays(wanted, rest, credit)]
         : instalmentDues(credit);
-  return [depositDue(wanted, depositMinor), ...later].filter((due) => due.amountMinor > 0);
+  return [depositDue(wanted, depositMinor)].concat(later).filter((due) => due.amountMinor > 0);
 }
 
 function depositDue(wanted: WantedCourse, amountMinor: Minor): Due {
-  const { charge } = wanted.compiled.book.deposit;
   return {
     id: 'deposit',
     kind: 'deposit',
     label: 'On accepting',
-    detail: charge.kind === 'rate' ? `deposit, ${formatRate(charge.rateBp)}` : 'deposit',
+    detail: wanted.compiled.words.deposit,
     dueOn: wanted.acceptedOn,
     amountMinor,
     from: 'patient',
@@ -56,31 +46,33 @@ function depositDue(wanted: WantedCourse, amountMinor: Minor): Due {
 /** The balance before the surgery; staged eyes are paid one by one, each before its own day. */
 function balances(wanted: WantedCourse, rest: Minor, shares: ByColumn): Due[] {
   const [first, second] = wanted.eyes;
-  const detail = daysBeforeWords(wanted.compiled.book.balanceDueDays);
-  const base = { kind: 'balance', from: 'patient', detail } as const;
-  if (!wanted.staged || !second) {
-    return [
-      { ...base, id: 'balance', label: 'Balance', dueOn: balanceDay(wanted, first?.on), amountMinor: rest },
-    ];
-  }
+  if (!wanted.staged || !first || !second) return [balance(wanted, 'balance', 'Balance', first?.on, rest)];
   const secondShare = least(shares[second.eye], rest);
-  const names = { OD: 'right eye', OS: 'left eye' } as const;
   return [
-    {
-      ...base,
-      id: 'balance-first',
-      label: `Balance, ${names[second.eye === 'OD' ? 'OS' : 'OD']}`,
-      dueOn: balanceDay(wanted, first?.on),
-      amountMinor: subtract(rest, secondShare),
-    },
-    {
-      ...base,
-      id: 'balance-second',
-      label: `Balance, ${names[second.eye]}`,
-      dueOn: balanceDay(wanted, second.on),
-      amountMinor: secondShare,
-    },
+    balance(wanted, 'balance-first', BALANCE_OF[first.eye], first.on, subtract(rest, secondShare)),
+    balance(wanted, 'balance-second', BALANCE_OF[second.eye], second.on, secondShare),
   ];
+}
+
+const BALANCE_OF = { OD: 'Balance, right eye', OS: 'Balance, left eye' } as const;
+
+function balance(
+  wanted: WantedCourse,
+  id: string,
+  label: string,
+  surgeryOn: ClinicDate | null | undefined,
+  amountMinor: Minor,
+): Due {
+  const dueOn = balanceDay(wanted, surgeryOn);
+  return {
+    id,
+    kind: 'balance',
+    label,
+    detail: wanted.compiled.words.balance,
+    dueOn,
+    amountMinor,
+    from: 'patient',
+  };
 }
 
 function balanceDay(wanted: WantedCourse, surgeryOn: ClinicDate | null | undefined): ClinicDate | null {
@@ -95,7 +87,7 @@ function lenderPays(wanted: WantedCourse, amountMinor: Minor, credit: CreditTerm
     id: 'lender',
     kind: 'lender',
     label: credit.label,
-    detail: daysBeforeWords(wanted.compiled.book.balanceDueDays),
+    detail: wanted.compiled.words.balance,
     dueOn: balanceDay(wanted, wanted.eyes[0]?.on),
     amountMinor,
     from: 'lender',
@@ -116,7 +108,9 @@ function instalmentDues(credit: CreditTerms): Due[] {
 
 /** What the schedule has asked for before a day; what falls due on acceptance always counts. */
 export function askedBefore(schedule: readonly Due[], on: ClinicDate, acceptedOn: ClinicDate): Minor {
-  return schedule
-    .filter((due) => due.dueOn !== null && (due.dueOn < on || due.dueOn <= acceptedOn))
-    .reduce((total, due) => add(total, due.amountMinor), ZERO);
+  let asked = ZERO;
+  for (const { dueOn, amountMinor } of schedule) {
+    if (dueOn !== null && (dueOn < on || dueOn <= acceptedOn)) asked = add(asked, amountMinor);
+  }
+  return asked;
 }

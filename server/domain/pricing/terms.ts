@@ -1,5 +1,6 @@
 import { formatAmount } from '#domain/money/index';
 import { addDays, type ClinicDate, formatDay } from '#domain/time/index';
+import { coverOf, followUpsOf } from './aftercare.ts';
 import { discountSize, limitsOf } from './check-discounts.ts';
 import type { WantedCourse } from './check-input.ts';
 import type {
@@ -12,7 +13,7 @@ import type {
   WarningCode,
 } from './course.ts';
 import { isInterestFreeExempt } from './credit.ts';
-import { aftercareOf, daysApart } from './parts.ts';
+import { daysApart } from './reductions.ts';
 
 /** Last day a quote holds, the day of issue being the first. */
 export function validUntil(quotedOn: ClinicDate, validityDays: number): ClinicDate {
@@ -43,25 +44,26 @@ export function approvalsOf(wanted: WantedCourse): ApprovalNeeded[] {
 
 /** What the price includes, in the patient's words. */
 export function includedOf(wanted: WantedCourse): Included[] {
-  const { compiled, package: chosen } = wanted;
   const included: Included[] = [];
-  const aftercare = aftercareOf(wanted);
-  for (const id of aftercare.followUpIds) {
-    const label = compiled.followUps.get(id)?.label;
-    if (label !== undefined) included.push({ ruleId: id, label });
+  const note = ({ id, label }: { readonly id: string; readonly label: string }) => {
+    if (!included.some(({ ruleId }) => ruleId === id)) included.push({ ruleId: id, label });
+  };
+  for (const schedule of followUpsOf(wanted)) note(schedule);
+  for (const eye of wanted.eyes) {
+    const cover = coverOf(wanted, eye);
+    if (cover) note(cover);
   }
-  const covers = new Set(wanted.eyes.map(aftercare.coverOf).filter((id) => id !== null));
-  for (const id of covers) {
-    const label = compiled.covers.get(id)?.label;
-    if (label !== undefined) included.push({ ruleId: id, label });
+  if (wanted.package) {
+    for (const label of wanted.package.included) included.push({ ruleId: wanted.package.id, label });
   }
-  for (const label of chosen?.included ?? []) included.push({ ruleId: chosen?.id ?? '', label });
   return included;
 }
 
 /** What it does not include: the book's list and the package's. */
 export function notIncludedOf(wanted: WantedCourse): string[] {
-  return [...new Set([...wanted.compiled.book.notIncluded, ...(wanted.package?.notIncluded ?? [])])];
+  const { notIncluded } = wanted.compiled.book;
+  const more = wanted.package?.notIncluded.filter((words) => !notIncluded.includes(words)) ?? [];
+  return notIncluded.concat(more);
 }
 
 /** Everything a person should know before sending or accepting. */
@@ -70,12 +72,11 @@ export function warningsOf(
   comparison: PackageComparison | null,
   credit: CreditTerms | null,
 ): Warning[] {
-  return [
-    ...planWarnings(wanted),
-    ...secondEyeWarnings(wanted),
-    ...discountWarnings(wanted),
-    ...otherWarnings(wanted, comparison, credit),
-  ];
+  return planWarnings(wanted).concat(
+    secondEyeWarnings(wanted),
+    discountWarnings(wanted),
+    otherWarnings(wanted, comparison, credit),
+  );
 }
 
 function warn(code: WarningCode, words: string, eye: Warning['eye'] = null): Warning {

@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { minor, splitByWeights, splitEvenly, sum } from '#domain/money/index';
+import { divideHalfAway, minor, scale, splitByWeights, splitEvenly, sum } from '#domain/money/index';
 
 describe('splitByWeights', () => {
   test('left-over units · go to the largest remainders · KPMG 20/30/40 over 80', () => {
@@ -33,4 +33,18 @@ describe('splitByWeights', () => {
       { numRuns: 1000 },
     );
   });
+});
+
+test('amounts and weights beyond plain numbers · are split and scaled as exactly', () => {
+  const huge = minor(9_000_000_000_000_001);
+  expect(splitByWeights(huge, [1, 1])).toEqual([4_500_000_000_000_001, 4_500_000_000_000_000]);
+  expect(splitByWeights(minor(-7), [3_000_000_000_000_000, 1_000_000_000_000_000])).toEqual([-5, -2]);
+  fc.assert(
+    fc.property(fc.integer({ min: -1e9, max: 1e9 }), fc.integer({ min: 1, max: 30_000 }), (amount, rate) => {
+      const exact = divideHalfAway(BigInt(amount) * BigInt(rate), 10_000n);
+      expect(scale(minor(amount), rate, 10_000)).toBe(Number(exact));
+      expect(scale(minor(amount), rate * 1e9, 10_000 * 1e9)).toBe(Number(exact));
+    }),
+    { numRuns: 1000 },
+  );
 });
