@@ -1,6 +1,4 @@
 import express, { type RequestHandler, type Router } from 'express';
-import type { Instant } from '#domain/time/index';
-import { instantOfMs } from '#domain/time/index';
 
 /** What the webhook needs from the payments feature: verify, store once. */
 export interface WebhookSink {

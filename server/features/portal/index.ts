@@ -1,0 +1,3 @@
+export { patientOfRequest } from './patient-link.ts';
+export { readPatientQuote } from './patient-quote-read.ts';
+export { portalRoutes } from './portal-routes.ts';
