@@ -1,4 +1,4 @@
-import { add, type Minor, minor, subtract, sum, ZERO } from '#domain/money/index';
+import { add, type Minor, minor, scale, subtract, sum, times, ZERO } from '#domain/money/index';
 import type { Tender } from './tenders.ts';
 
 export interface TenderGiven {
@@ -127,5 +127,5 @@ function checkSums(asked: PaymentAsked): PaymentRefusal[] {
 }
 
 function roundToStep(amount: Minor, step: number): Minor {
-  return minor(Math.floor((amount + step / 2) / step) * step);
+  return times(scale(amount, 1, step), step);
 }

@@ -1,0 +1,3 @@
+export * from './day.ts';
+export * from './denominations.ts';
+export * from './till.ts';
