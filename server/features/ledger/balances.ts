@@ -31,7 +31,7 @@ export interface AccountTotal {
 
 /** The trial balance of the given sites as of a booked day; accounts without movement are absent. */
 export async function accountTotals(
-  trx: Trx,
+  trx: Trx | Db,
   siteIds: readonly number[],
   asOf: ClinicDate,
 ): Promise<AccountTotal[]> {

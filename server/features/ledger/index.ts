@@ -1,4 +1,5 @@
 export { type AccountTotal, accountTotals, courseBalance, tillBalance } from './balances.ts';
+export { ledgerRoutes } from './ledger-routes.ts';
 export { type SeriesKind, takeNumber } from './number-series.ts';
 export {
   type EntrySource,

@@ -1,0 +1,1 @@
+export { computeProof, proofRoutes } from './proof-routes.ts';
