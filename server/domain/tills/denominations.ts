@@ -37,7 +37,9 @@ export function denominationsOf(currency: CurrencyCode): readonly Denomination[]
     ];
   }
   const one = 10 ** decimalsOf(currency);
-  const sizes = [one * 100, one * 10, one, one / 10, one / 100].filter((size) => Number.isInteger(size));
+  const largest = Math.max(one * 100, 100_000);
+  const sizes: number[] = [];
+  for (let size = largest; size >= 1; size /= 10) sizes.push(size);
   return sizes
     .flatMap((size) => [size * 5, size * 2, size])
     .map((value) => ({ valueMinor: minor(value), kind: value >= one * 5 ? 'note' : 'coin' }));
