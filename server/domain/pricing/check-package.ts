@@ -31,5 +31,22 @@ export function checkPackage(
       'Choose a procedure of the package, or no package.',
     );
   }
+  refuseChangedAftercare(input, compiled, chosen, refuse);
   return chosen;
+}
+
+/** A package promises its aftercare; a discount that changes the aftercare would take back what the package says. */
+function refuseChangedAftercare(
+  input: CourseInput,
+  compiled: CompiledPriceBook,
+  chosen: Package,
+  refuse: Refuse,
+): void {
+  if (!chosen.includes.aftercare && chosen.includes.coverId === null) return;
+  for (const [index, { discountId }] of input.discounts.entries()) {
+    const discount = compiled.discounts.get(discountId);
+    if (!discount?.aftercare) continue;
+    const words = `${discount.reason} changes the aftercare that ${chosen.label} includes.`;
+    refuse(`discounts.${index}`, 'package_does_not_fit', words, 'Take the package or the discount.');
+  }
 }

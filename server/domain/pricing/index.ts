@@ -26,8 +26,9 @@ export {
 export * from './credit.ts';
 export * from './diff-books.ts';
 export * from './explain.ts';
+export type { BookFinding, BookFindingCode } from './finding.ts';
 export { type CancellationEvent, type Kept, keptByLadder } from './ladder.ts';
 export * from './price-book.ts';
 export { contentKey, ENGINE_VERSION, quoteCourse } from './quote-course.ts';
 export { rateOn } from './taxes.ts';
-export * from './validate-book.ts';
+export { validatePriceBook } from './validate-book.ts';
