@@ -1,0 +1,2 @@
+export * from './allocate-refund.ts';
+export * from './cancel.ts';
