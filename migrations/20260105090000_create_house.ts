@@ -194,9 +194,12 @@ export async function up(db: Knex): Promise<void> {
       day_on DATE NOT NULL,
       state VARCHAR(8) NOT NULL,
       opened_at DATETIME(3) NOT NULL,
+      counted_by INT UNSIGNED NULL,
+      counted_at DATETIME(3) NULL,
       closed_at DATETIME(3) NULL,
       PRIMARY KEY (site_id, day_on),
       CONSTRAINT business_days_site FOREIGN KEY (site_id) REFERENCES sites (site_id),
+      CONSTRAINT business_days_counted_by FOREIGN KEY (counted_by) REFERENCES users (user_id),
       CONSTRAINT business_days_state CHECK (state IN ('open','counted','closed')),
       CONSTRAINT business_days_closed CHECK ((state = 'closed') = (closed_at IS NOT NULL))
     )`,
