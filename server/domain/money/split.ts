@@ -78,8 +78,11 @@ function splitSmall(amount: Minor, weights: readonly number[]): Minor[] | null {
  */
 export function splitEvenly(amount: Minor, n: number): Minor[] {
   if (!Number.isSafeInteger(n) || n < 1) throw new RangeError(`Not a number of parts: ${n}`);
-  return splitByWeights(
-    amount,
-    Array.from({ length: n }, () => 1),
-  );
+  const size = Math.abs(amount);
+  const larger = size % n;
+  const part = (size - larger) / n;
+  const sign = amount < 0 ? -1 : 1;
+  const parts: Minor[] = [];
+  for (let index = 0; index < n; index += 1) parts.push(minor(sign * (index < larger ? part + 1 : part)));
+  return parts;
 }

@@ -7,7 +7,6 @@ import {
   strongestMeridianMd,
 } from '#domain/prescription/index';
 import type { ClinicDate } from '#domain/time/index';
-import { canonicalJson } from './canonical-json.ts';
 import { type ChosenDiscount, checkDiscounts } from './check-discounts.ts';
 import { checkPackage } from './check-package.ts';
 import { bandAt, type CompiledPriceBook, pairKey } from './compile.ts';
@@ -53,12 +52,16 @@ export function checkInput(
   | { readonly ok: false; readonly refusals: Refusal[] } {
   const refusals: Refusal[] = [];
   const refuse: Refuse = (field, code, words, change) => refusals.push({ field, code, words, change });
-  const found = EYES.flatMap((eye) => checkEye(eye, input, compiled, refuse) ?? []);
+  const eyes: WantedEye[] = [];
+  for (const eye of EYES) {
+    const wanted = checkEye(eye, input, compiled, refuse);
+    if (wanted) eyes.push(wanted);
+  }
   if (input.eyes.OD === null && input.eyes.OS === null) {
     refuse('eyes', 'no_eye', 'Neither eye is to be treated.', 'Choose a procedure for at least one eye.');
   }
-  const staged = isStaged(input, found);
-  const eyes = staged ? found.sort(byDay) : found.sort((a, b) => byPrice(a, b));
+  const staged = isStaged(input, eyes);
+  eyes.sort(staged ? byDay : byPrice);
   const secondEyeRule = ruleForPair(eyes, compiled);
   checkDays(input, eyes, staged, secondEyeRule, refuse);
   const wanted: WantedCourse = {
@@ -109,10 +112,11 @@ function checkEye(
   }
   const form = minusForm(wish.prescription);
   const meridianMd = strongestMeridianMd(form);
-  const bands = [
-    checkBand(eye, procedure, compiled, 'meridian', Math.abs(meridianMd), refuse),
-    checkBand(eye, procedure, compiled, 'cylinder', Math.abs(form.cylinderMd), refuse),
-  ].filter((band) => band !== null);
+  const bands: Band[] = [];
+  const meridian = checkBand(eye, procedure, compiled, 'meridian', Math.abs(meridianMd), refuse);
+  if (meridian) bands.push(meridian);
+  const cylinder = checkBand(eye, procedure, compiled, 'cylinder', Math.abs(form.cylinderMd), refuse);
+  if (cylinder) bands.push(cylinder);
   return { eye, wish, procedure, form, meridianMd, bands, on: dayOfEye(input, eye) };
 }
 
@@ -149,11 +153,19 @@ function isStaged(input: CourseInput, eyes: readonly WantedEye[]): boolean {
 
 /** The dearer procedure is the first eye; further ties by everything asked of the eye, never by its side. */
 function byPrice(a: WantedEye, b: WantedEye): number {
-  if (a.procedure.priceMinor !== b.procedure.priceMinor) {
-    return b.procedure.priceMinor - a.procedure.priceMinor;
-  }
-  const keys = [a, b].map(({ wish, form }) => canonicalJson([wish.procedureId, form, wish.coverId]));
-  return (keys[0] ?? '') < (keys[1] ?? '') ? -1 : keys[0] === keys[1] ? 0 : 1;
+  return (
+    b.procedure.priceMinor - a.procedure.priceMinor ||
+    inOrder(a.procedure.id, b.procedure.id) ||
+    a.form.sphereMd - b.form.sphereMd ||
+    a.form.cylinderMd - b.form.cylinderMd ||
+    (a.form.axisDeg ?? 0) - (b.form.axisDeg ?? 0) ||
+    inOrder(a.wish.coverId ?? '', b.wish.coverId ?? '')
+  );
+}
+
+function inOrder(a: string, b: string): number {
+  if (a === b) return 0;
+  return a < b ? -1 : 1;
 }
 
 function byDay(a: WantedEye, b: WantedEye): number {

@@ -1,6 +1,6 @@
 import type { Eye } from '#domain/eye';
 import { add, greatest, least, type Minor, subtract, sum, ZERO } from '#domain/money/index';
-import { addDays, type ClinicDate, daysBetween } from '#domain/time/index';
+import { addDays, type ClinicDate, dayNumber, daysBetween, dayText } from '#domain/time/index';
 import type { WantedCourse } from './check-input.ts';
 import type { ByColumn, CancellationRow, Due } from './course.ts';
 import { chargeOf } from './part.ts';
@@ -33,22 +33,30 @@ export function keptByLadder(
   },
 ): Kept {
   const { event, on, acceptedOn, surgeryOn, shareMinor } = what;
-  const kept = (charge: Charge, by: string): Kept => ({
-    keptMinor: least(chargeOf(charge, shareMinor), shareMinor),
-    by,
-  });
   if (event === 'unsuitable' || event === 'clinic_cancels') return { keptMinor: ZERO, by: event };
   if (on <= addDays(acceptedOn, ladder.reflectionDays)) return { keptMinor: ZERO, by: 'reflection' };
-  if (event === 'no_show') return kept(ladder.noShow, 'no_show');
+  if (event === 'no_show') return { keptMinor: atMost(ladder.noShow, shareMinor), by: 'no_show' };
+  if (surgeryOn !== null) return keptOfDays(ladder, daysBetween(on, surgeryOn), shareMinor);
   const [top] = ladder.rungs;
-  if (surgeryOn === null) return top ? kept(top.kept, 'no_day') : { keptMinor: ZERO, by: 'no_day' };
-  const rung = ladder.rungs.find(({ minDaysBefore }) => daysBetween(on, surgeryOn) >= minDaysBefore);
-  return rung ? kept(rung.kept, rung.id) : kept(ladder.noShow, 'no_show');
+  return { keptMinor: top ? atMost(top.kept, shareMinor) : ZERO, by: 'no_day' };
 }
 
+/** What the rungs keep some days before surgery; on the day itself what a no-show costs. */
+function keptOfDays(ladder: CancellationLadder, daysBefore: number, shareMinor: Minor): Kept {
+  for (const { id, minDaysBefore, kept } of ladder.rungs) {
+    if (daysBefore >= minDaysBefore && daysBefore > 0) return { keptMinor: atMost(kept, shareMinor), by: id };
+  }
+  return { keptMinor: atMost(ladder.noShow, shareMinor), by: 'no_show' };
+}
+
+function atMost(charge: Charge, shareMinor: Minor): Minor {
+  return least(chargeOf(charge, shareMinor), shareMinor);
+}
+
+/** One eye's surgery day as a number of days, and its share of the price. */
 interface Fate {
   readonly eye: Eye;
-  readonly on: ClinicDate | null;
+  readonly day: number;
   readonly shareMinor: Minor;
 }
 
@@ -58,15 +66,22 @@ export function cancellationRows(
   shares: ByColumn,
   schedule: readonly Due[],
 ): CancellationRow[] {
-  const fates = wanted.eyes.map(({ eye, on }, index): Fate => {
-    const share = index === 0 ? add(shares[eye], shares.OU) : shares[eye];
-    return { eye, on, shareMinor: greatest(share, ZERO) };
-  });
+  const fates: Fate[] = [];
+  let dated = true;
+  for (const { eye, on } of wanted.eyes) {
+    const share = fates.length === 0 ? add(shares[eye], shares.OU) : shares[eye];
+    if (on === null) dated = false;
+    fates.push({
+      eye,
+      day: on === null ? Number.POSITIVE_INFINITY : dayNumber(on),
+      shareMinor: greatest(share, ZERO),
+    });
+  }
+  const accepted = dayNumber(wanted.acceptedOn);
   const rows: CancellationRow[] = [];
-  const reflection = reflectionRow(wanted, fates, schedule);
-  if (reflection) rows.push(reflection);
-  if (fates.some(({ on }) => on === null)) addUndatedRows(rows, wanted, fates, schedule);
-  else addDatedRows(rows, wanted, fates, schedule, reflection?.until ?? addDays(wanted.acceptedOn, -1));
+  const reflected = addReflection(rows, wanted, fates, schedule, accepted);
+  if (dated) addDatedRows(rows, wanted, fates, schedule, accepted, reflected);
+  else addUndatedRows(rows, wanted, fates, schedule);
   rows.push(
     free('unsuitable', 'Found unsuitable'),
     free('clinic_cancels', 'The clinic cancels'),
@@ -75,18 +90,21 @@ export function cancellationRows(
   return rows;
 }
 
-function reflectionRow(
+/** The row in which everything comes back. Returns its last day, the day before acceptance when there is none. */
+function addReflection(
+  rows: CancellationRow[],
   wanted: WantedCourse,
   fates: readonly Fate[],
   schedule: readonly Due[],
-): CancellationRow | null {
+  accepted: number,
+): number {
   const { reflectionDays } = wanted.compiled.book.cancellation;
-  if (reflectionDays === 0) return null;
-  let until = addDays(wanted.acceptedOn, reflectionDays);
-  for (const { on } of fates) if (on !== null && on <= until) until = addDays(on, -1);
-  if (until < wanted.acceptedOn) return null;
+  let last = accepted + reflectionDays;
+  for (const { day } of fates) if (day <= last) last = day - 1;
+  if (reflectionDays === 0 || last < accepted) return accepted - 1;
+  const until = dayText(last) as ClinicDate;
   const paidMinor = askedBefore(schedule, until, wanted.acceptedOn);
-  return {
+  rows.push({
     event: 'reflection',
     until,
     label: 'Time to reflect',
@@ -94,7 +112,8 @@ function reflectionRow(
     keptMinor: ZERO,
     paidMinor,
     comesBackMinor: paidMinor,
-  };
+  });
+  return last;
 }
 
 /** One row for every day on which the sum kept changes, the days of surgery among them. */
@@ -103,48 +122,50 @@ function addDatedRows(
   wanted: WantedCourse,
   fates: readonly Fate[],
   schedule: readonly Due[],
-  after: ClinicDate,
+  accepted: number,
+  reflected: number,
 ): void {
-  const days: ClinicDate[] = [];
-  const note = (day: ClinicDate) => {
-    if (day > after && !days.includes(day)) days.push(day);
-  };
-  for (const { on } of fates) {
-    if (on === null) continue;
-    for (const { minDaysBefore } of wanted.compiled.book.cancellation.rungs)
-      note(addDays(on, -minDaysBefore));
-    note(on);
+  const { rungs } = wanted.compiled.book.cancellation;
+  const days: number[] = [];
+  for (const { day } of fates) {
+    for (const { minDaysBefore } of rungs) days.push(day - minDaysBefore);
+    days.push(day);
   }
-  for (const until of days.sort()) rows.push(datedRow(wanted, fates, schedule, until));
+  let before = reflected;
+  for (const day of days.sort((a, b) => a - b)) {
+    if (day <= before) continue;
+    before = day;
+    rows.push(datedRow(wanted, fates, schedule, day, accepted));
+  }
 }
 
 function datedRow(
   wanted: WantedCourse,
   fates: readonly Fate[],
   schedule: readonly Due[],
-  until: ClinicDate,
+  day: number,
+  accepted: number,
 ): CancellationRow {
-  const { acceptedOn, compiled } = wanted;
+  const { cancellation } = wanted.compiled.book;
+  const reflecting = day <= accepted + cancellation.reflectionDays;
   let keptMinor = ZERO;
   let done = ZERO;
   let nearest = Number.POSITIVE_INFINITY;
-  let open: Fate | null = null;
+  let open: Eye | null = null;
   for (const fate of fates) {
-    const { on: surgeryOn, shareMinor } = fate;
-    if (surgeryOn === null || surgeryOn < until) {
-      done = add(done, shareMinor);
+    if (fate.day < day) {
+      done = add(done, fate.shareMinor);
       continue;
     }
-    open = fate;
-    nearest = Math.min(nearest, daysBetween(until, surgeryOn));
-    const event = surgeryOn === until ? 'no_show' : 'cancels';
-    const { cancellation } = compiled.book;
-    const kept = keptByLadder(cancellation, { event, on: until, acceptedOn, surgeryOn, shareMinor });
-    keptMinor = add(keptMinor, kept.keptMinor);
+    open = fate.eye;
+    if (fate.day - day < nearest) nearest = fate.day - day;
+    if (!reflecting)
+      keptMinor = add(keptMinor, keptOfDays(cancellation, fate.day - day, fate.shareMinor).keptMinor);
   }
   const onTheDay = nearest === 0;
-  const paidMinor = askedBefore(schedule, onTheDay ? addDays(until, 1) : until, acceptedOn);
-  const only = done > 0 && open ? (open.eye === 'OD' ? ', right eye only' : ', left eye only') : '';
+  const until = dayText(day) as ClinicDate;
+  const paidMinor = askedBefore(schedule, until, onTheDay ? until : wanted.acceptedOn);
+  const only = done === 0 ? '' : open === 'OD' ? ', right eye only' : ', left eye only';
   return {
     event: onTheDay ? 'no_show' : 'cancels',
     until,
@@ -169,7 +190,7 @@ function addUndatedRows(
 ): void {
   const { cancellation, balanceDueDays } = wanted.compiled.book;
   for (const { minDaysBefore, kept } of cancellation.rungs) {
-    const keptMinor = sum(fates.map(({ shareMinor }) => least(chargeOf(kept, shareMinor), shareMinor)));
+    const keptMinor = sum(fates.map(({ shareMinor }) => atMost(kept, shareMinor)));
     const asked = schedule.filter(
       (due) => due.kind === 'deposit' || (due.dueOn === null && minDaysBefore < balanceDueDays),
     );
@@ -200,7 +221,7 @@ function free(event: 'unsuitable' | 'clinic_cancels', label: string): Cancellati
 
 function movesRow(wanted: WantedCourse, fates: readonly Fate[]): CancellationRow {
   const { freeMoves, fee } = wanted.compiled.book.cancellation.reschedule;
-  const fees = fates.map(({ shareMinor }) => least(chargeOf(fee, shareMinor), shareMinor));
+  const fees = fates.map(({ shareMinor }) => atMost(fee, shareMinor));
   return {
     event: 'moves',
     until: null,

@@ -3,7 +3,7 @@ import { add, type Minor, times } from '#domain/money/index';
 import { coverOf, followUpsOf } from './aftercare.ts';
 import type { WantedCourse, WantedEye } from './check-input.ts';
 import type { Step } from './explain.ts';
-import { chargeOf, newPart, type Part } from './part.ts';
+import { chargeOf, newPart, type Part, type Promised } from './part.ts';
 import type { AddOn, Band, EnhancementCover, FollowUpSchedule, PriceList } from './price-book.ts';
 
 /** Everything wanted, priced one by one in the order first eye, second eye, both. */
@@ -35,9 +35,6 @@ function addSurgery(parts: Part[], wantedEye: WantedEye, wanted: WantedCourse): 
   if (price !== procedure.priceMinor && wanted.priceList) {
     why.push({ label: wanted.priceList.label, amountMinor: price });
   }
-  const obligationId = eye === 'OD' ? 'surgery:OD' : 'surgery:OS';
-  const promise = (standAloneMinor: Minor) =>
-    ({ obligationId, kind: 'surgery', label: procedure.label, laterality: eye, standAloneMinor }) as const;
   const words = {
     row: 'surgery',
     kind: 'procedure',
@@ -46,7 +43,9 @@ function addSurgery(parts: Part[], wantedEye: WantedEye, wanted: WantedCourse): 
     detail: procedure.label,
   } as const;
   const { taxClassId } = procedure;
-  parts.push(newPart(words, eye, taxClassId, price, promise(procedure.standAloneMinor), why, true));
+  parts.push(
+    newPart(words, eye, taxClassId, price, surgeryPromise(wantedEye, procedure.standAloneMinor), why, true),
+  );
   for (const band of bands) {
     const standAlone = chargeOf(band.charge, procedure.standAloneMinor);
     const amount = chargeOf(band.charge, price);
@@ -58,9 +57,22 @@ function addSurgery(parts: Part[], wantedEye: WantedEye, wanted: WantedCourse): 
       detail: null,
     } as const;
     parts.push(
-      newPart(named, eye, taxClassId, amount, promise(standAlone), bandSteps(band, wantedEye), true),
+      newPart(
+        named,
+        eye,
+        taxClassId,
+        amount,
+        surgeryPromise(wantedEye, standAlone),
+        bandSteps(band, wantedEye),
+        true,
+      ),
     );
   }
+}
+
+function surgeryPromise({ eye, procedure }: WantedEye, standAloneMinor: Minor): Promised {
+  const obligationId = eye === 'OD' ? 'surgery:OD' : 'surgery:OS';
+  return { obligationId, kind: 'surgery', label: procedure.label, laterality: eye, standAloneMinor };
 }
 
 function bandSteps(band: Band, { wish, form, meridianMd }: WantedEye): Step[] {
@@ -84,25 +96,30 @@ function bandSteps(band: Band, { wish, form, meridianMd }: WantedEye): Step[] {
 
 /** Add-ons that bands require, that the package includes, that were asked for: each once. */
 function addAddOns(parts: Part[], wanted: WantedCourse): void {
-  const start = parts.length;
-  const take = (addOn: AddOn | undefined, laterality: Laterality, band: Band | null): void => {
-    if (!addOn) return;
-    for (let index = start; index < parts.length; index += 1) {
-      if (parts[index]?.words.ruleId === addOn.id && parts[index]?.laterality === laterality) return;
-    }
-    parts.push(addOnPart(addOn, laterality, band, wanted));
-  };
+  const { addOns } = wanted.compiled;
   for (const { eye, bands } of wanted.eyes) {
     for (const band of bands) {
-      for (const id of band.requiresAddOnIds) take(wanted.compiled.addOns.get(id), eye, band);
+      for (const id of band.requiresAddOnIds) addAddOn(parts, addOns.get(id), eye, band, wanted);
     }
   }
   for (const id of wanted.package?.includes.addOnIds ?? []) {
-    const addOn = wanted.compiled.addOns.get(id);
-    if (addOn?.per === 'eye') for (const { eye } of wanted.eyes) take(addOn, eye, null);
-    else take(addOn, 'OU', null);
+    const addOn = addOns.get(id);
+    if (addOn?.per === 'eye') for (const { eye } of wanted.eyes) addAddOn(parts, addOn, eye, null, wanted);
+    else addAddOn(parts, addOn, 'OU', null, wanted);
   }
-  for (const { addOn, laterality } of wanted.addOns) take(addOn, laterality, null);
+  for (const { addOn, laterality } of wanted.addOns) addAddOn(parts, addOn, laterality, null, wanted);
+}
+
+function addAddOn(
+  parts: Part[],
+  addOn: AddOn | undefined,
+  laterality: Laterality,
+  band: Band | null,
+  wanted: WantedCourse,
+): void {
+  if (!addOn) return;
+  for (const part of parts) if (part.words.ruleId === addOn.id && part.laterality === laterality) return;
+  parts.push(addOnPart(addOn, laterality, band, wanted));
 }
 
 function addOnPart(addOn: AddOn, laterality: Laterality, band: Band | null, wanted: WantedCourse): Part {
@@ -135,6 +152,15 @@ function obligationOf(addOn: AddOn): string {
 }
 
 function addFollowUp(parts: Part[], schedule: FollowUpSchedule, wanted: WantedCourse): void {
+  if (schedule.per === 'course') {
+    parts.push(followUpPart(schedule, 'OU', wanted));
+    return;
+  }
+  const own = wanted.eyes.filter(({ procedure }) => procedure.followUpId === schedule.id);
+  for (const { eye } of own.length > 0 ? own : wanted.eyes) parts.push(followUpPart(schedule, eye, wanted));
+}
+
+function followUpPart(schedule: FollowUpSchedule, laterality: Laterality, wanted: WantedCourse): Part {
   const amount = listed(wanted.priceList, schedule.id, schedule.priceMinor);
   const words = {
     row: `aftercare:${schedule.id}`,
@@ -143,23 +169,17 @@ function addFollowUp(parts: Part[], schedule: FollowUpSchedule, wanted: WantedCo
     label: schedule.label,
     detail: null,
   } as const;
-  const why: Step[] = [
+  const promise = {
+    obligationId: 'aftercare',
+    kind: 'aftercare',
+    label: schedule.label,
+    laterality,
+    standAloneMinor: schedule.standAloneMinor,
+  } as const;
+  return newPart(words, laterality, schedule.taxClassId, amount, promise, [
     { label: `Price per ${schedule.per}`, amountMinor: amount },
     { label: 'Visits', text: String(schedule.visits.length) },
-  ];
-  const addFor = (laterality: Laterality) => {
-    const promise = {
-      obligationId: 'aftercare',
-      kind: 'aftercare',
-      label: schedule.label,
-      laterality,
-      standAloneMinor: schedule.standAloneMinor,
-    } as const;
-    parts.push(newPart(words, laterality, schedule.taxClassId, amount, promise, why));
-  };
-  const own = wanted.eyes.filter(({ procedure }) => procedure.followUpId === schedule.id);
-  if (schedule.per === 'course') addFor('OU');
-  else for (const { eye } of own.length > 0 ? own : wanted.eyes) addFor(eye);
+  ]);
 }
 
 function coverPart(cover: EnhancementCover, { eye }: WantedEye, wanted: WantedCourse): Part {

@@ -246,15 +246,15 @@ describe('the lines of a course', () => {
     expect(lines({ priceListId: 'staff', discounts: [euros('family', 100), rate('goodwill', 5)] })).toEqual({
       'surgery:OD': '2,000.00',
       'surgery:OS': '2,000.00',
-      'second-eye:OD': '−200.00',
+      'second-eye:OS': '−200.00',
       'aftercare:visits:OU': '240.00',
-      'price-list:staff:OD': '−90.00',
-      'price-list:staff:OS': '−100.00',
+      'price-list:staff:OD': '−100.00',
+      'price-list:staff:OS': '−90.00',
       'price-list:staff:OU': '−12.00',
-      'discount:goodwill:OD': '−85.50',
-      'discount:goodwill:OS': '−95.00',
-      'discount:family:OD': '−47.37',
-      'discount:family:OS': '−52.63',
+      'discount:goodwill:OD': '−95.00',
+      'discount:goodwill:OS': '−85.50',
+      'discount:family:OD': '−52.63',
+      'discount:family:OS': '−47.37',
     });
   });
   test('tax on top · stands in lines of its own', () => {
