@@ -26,13 +26,14 @@ export type SharedFee =
  * global fee for post-operative care, by days of a 90-day period.)
  */
 export function shareFee(feeMinor: Minor, terms: SharedCareTerms, periods: readonly CarePeriod[]): SharedFee {
-  const inOrder = [...periods].sort((a, b) => a.fromDay - b.fromDay);
-  for (const [index, { fromDay, toDay }] of inOrder.entries()) {
-    const field = `periods.${index}`;
+  const inOrder = periods.map((period, index) => ({ ...period, field: `periods.${index}` }));
+  inOrder.sort((a, b) => a.fromDay - b.fromDay);
+  let cared = 0;
+  for (const { fromDay, toDay, field } of inOrder) {
     if (fromDay < 1 || toDay < fromDay || toDay > terms.days)
       return { ok: false, field, words: `Care lies within days 1 to ${terms.days}.` };
-    if (index > 0 && fromDay <= (inOrder[index - 1]?.toDay ?? 0))
-      return { ok: false, field, words: 'Two providers cannot care for the same day.' };
+    if (fromDay <= cared) return { ok: false, field, words: 'Two providers cannot care for the same day.' };
+    cared = toDay;
   }
   const days = inOrder.map(({ fromDay, toDay }) => toDay - fromDay + 1);
   const surgeonDays = terms.days - days.reduce((total, each) => total + each, 0);
