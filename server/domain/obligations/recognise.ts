@@ -111,12 +111,13 @@ function prospective({ priceMinor, parts }: ChangedContract): ReallocationResult
           left,
           open.map((part) => part.standAloneMinor),
         );
-  const byId = new Map(open.map(({ id }, index) => [id, shares[index] ?? ZERO]));
-  return {
-    ok: true,
-    allocated: parts.map((part) => byId.get(part.id) ?? part.allocatedMinor),
-    catchUpMinor: ZERO,
-  };
+  let next = 0;
+  const allocated = parts.map((part) => {
+    if (part.recognisedOn !== null) return part.allocatedMinor;
+    next += 1;
+    return shares[next - 1] ?? ZERO;
+  });
+  return { ok: true, allocated, catchUpMinor: ZERO };
 }
 
 function catchUp({ priceMinor, parts }: ChangedContract): ReallocationResult {
