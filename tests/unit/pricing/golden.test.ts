@@ -281,6 +281,33 @@ describe('the lines of a course', () => {
   });
 });
 
+describe('which eye is the second', () => {
+  const secondEye = [
+    {
+      id: 'pair-lasik-lenticule',
+      label: 'LASIK and lenticule extraction',
+      procedureIds: ['lasik', 'lenticule'] as const,
+      sameSession: { kind: 'rate' as const, rateBp: 1_000 },
+      staged: null,
+      ifNever: null,
+    },
+  ];
+  test('one day · the one with the cheaper procedure, on whichever side', () => {
+    for (const [side, eyes] of [
+      ['OS', { OD: eye('lenticule -3.00'), OS: eye('lasik -3.00') }],
+      ['OD', { OD: eye('lasik -3.00'), OS: eye('lenticule -3.00') }],
+    ] as const) {
+      const result = quoteCourse(courseInput({ eyes }), { ...goldenBook, secondEye });
+      const off = result.ok ? result.course.lines.find(({ kind }) => kind === 'second_eye') : undefined;
+      expect([off?.laterality, off?.amountMinor]).toEqual([side, eur(-200)]);
+    }
+  });
+});
+
+test('a quote that holds thirty days · holds through the thirtieth, the day of issue being the first', () => {
+  expect(priced(courseInput()).validUntil).toBe('2026-04-10');
+});
+
 describe('tax of a course', () => {
   const withDrops = (on: string) =>
     priced(courseInput({ addOns: forBoth('drops'), surgery: { plan: 'same_session', on: clinicDate(on) } }))
@@ -389,6 +416,14 @@ describe('the ladder of a course', () => {
       ['cancels', '2026-05-02', 50, 0],
       ['cancels', '2026-05-15', 380, 1_520],
       ['no_show', '2026-05-16', 950, 950],
+    ]);
+  });
+  test('a day inside the time to reflect · everything comes back until it, and on it', () => {
+    // Due at once: deposit 400 and balance 3,640.
+    expect(rows({ surgery: { plan: 'same_session', on: clinicDate('2026-03-20') } }).slice(0, 3)).toEqual([
+      ['reflection', '2026-03-19', 0, 4_040],
+      ['no_show', '2026-03-20', 0, 4_040],
+      ['unsuitable', null, 0, 'all'],
     ]);
   });
   test('no day agreed · by days before surgery', () => {
