@@ -21,11 +21,27 @@ export interface Service {
 export interface ServiceOptions {
   readonly secretKey: string;
   readonly currency: string;
+  /** What the start names wins over what an earlier run was told; null leaves that as it is. */
   readonly webhookUrl: string | null;
-  readonly webhookSecret: string;
+  readonly webhookSecret: string | null;
 }
 
+export const DEFAULT_WEBHOOK_SECRET = 'whsec_tenderlight_local';
+
 const SETTINGS = 'settings';
+
+const FIRST_SETTINGS: SettingsRecord = {
+  id: SETTINGS,
+  seq: 0,
+  created: 0,
+  webhookUrl: null,
+  webhookSecret: DEFAULT_WEBHOOK_SECRET,
+  signatureTime: 'clock',
+  redirect: 'after_webhook',
+  shortBalance: false,
+  feeDelayMs: 0,
+  negativePayouts: false,
+};
 
 export function createService(store: Store, options: ServiceOptions): Service {
   const service: Service = {
@@ -38,26 +54,12 @@ export function createService(store: Store, options: ServiceOptions): Service {
     payersUnderway: 0,
     wake: () => {},
   };
-  const saved = store.find('settings', SETTINGS);
-  const fresh: SettingsRecord = {
-    id: SETTINGS,
-    seq: 0,
-    created: 0,
-    webhookUrl: null,
-    webhookSecret: options.webhookSecret,
-    signatureTime: 'clock',
-    redirect: 'after_webhook',
-    shortBalance: false,
-    feeDelayMs: 0,
-    negativePayouts: false,
-  };
-  const settings = saved ?? fresh;
+  const saved = store.find('settings', SETTINGS) ?? FIRST_SETTINGS;
   store.transact(() =>
     store.put('settings', {
-      ...settings,
-      // What the start names wins over what an earlier run was told.
-      webhookUrl: options.webhookUrl ?? settings.webhookUrl,
-      webhookSecret: options.webhookUrl === null ? settings.webhookSecret : options.webhookSecret,
+      ...saved,
+      webhookUrl: options.webhookUrl ?? saved.webhookUrl,
+      webhookSecret: options.webhookSecret ?? saved.webhookSecret,
     }),
   );
   return service;

@@ -13,9 +13,12 @@ import type { Service } from './service.ts';
 import { createService } from './service.ts';
 
 export const DEFAULT_SECRET_KEY = 'sk_test_tenderlight_local';
-export const DEFAULT_WEBHOOK_SECRET = 'whsec_tenderlight_local';
+export { DEFAULT_WEBHOOK_SECRET } from './service.ts';
+
+const LOOPBACK = '127.0.0.1';
 
 export interface StripeMockOptions {
+  /** Address API and hosted page listen on; loopback unless given. */
   readonly host?: string | undefined;
   /** Port of API and hosted page; 0 takes a free one. */
   readonly port?: number | undefined;
@@ -38,14 +41,13 @@ export interface RunningStripeMock {
 
 /** Starts the stand-in of the hosted payment service inside this process. */
 export async function startStripeMock(options: StripeMockOptions = {}): Promise<RunningStripeMock> {
-  const host = options.host ?? '127.0.0.1';
   const { store, compact } =
     options.dataFolder === undefined ? openStoreInMemory() : openStoreInFolder(options.dataFolder);
   const service = createService(store, {
     secretKey: options.secretKey ?? DEFAULT_SECRET_KEY,
     currency: options.currency ?? 'eur',
     webhookUrl: options.webhookUrl ?? null,
-    webhookSecret: options.webhookSecret ?? DEFAULT_WEBHOOK_SECRET,
+    webhookSecret: options.webhookSecret ?? null,
   });
   const queue = new Queue(service, {
     settle: (task) => runTask(service, task),
@@ -57,11 +59,14 @@ export async function startStripeMock(options: StripeMockOptions = {}): Promise<
     { path: '/', router: pageRoutes(service, desk) },
   ]);
   const control = createHttpServer([{ path: '/', router: controlRoutes({ service, queue, desk }) }]);
-  service.apiUrl = await listen(api, host, options.port ?? 0);
-  const controlUrl = await listen(control, host, options.controlPort ?? 0).catch(async (error: unknown) => {
-    await close(api);
-    throw error;
-  });
+  service.apiUrl = await listen(api, options.host ?? LOOPBACK, options.port ?? 0);
+  // Whoever reaches the control port moves the money: it is never offered beyond this machine.
+  const controlUrl = await listen(control, LOOPBACK, options.controlPort ?? 0).catch(
+    async (error: unknown) => {
+      await close(api);
+      throw error;
+    },
+  );
   resume(service);
   queue.start();
   return {

@@ -14,7 +14,7 @@ export function page(title: string, content: Html): string {
 <style>${new Html(STYLE)}</style>
 </head>
 <body>
-<p class="banner">Local stand-in, no money moves</p>
+<header class="banner">Local stand-in, no money moves</header>
 <main>${content}</main>
 </body>
 </html>
@@ -30,7 +30,7 @@ export function summary(session: SessionRecord): Html {
       }</th><td>${readableAmount(unitAmount * quantity, session.currency)}</td></tr>`,
   );
   return html`<section aria-labelledby="what">
-<h2 id="what">Your payment</h2>
+<h1 id="what">Your payment</h1>
 <table>
 <tbody>${rows}</tbody>
 <tfoot><tr><th scope="row">Total</th><td>${readableAmount(session.amountTotal, session.currency)}</td></tr></tfoot>

@@ -27,7 +27,7 @@ export function paymentPage(session: SessionRecord, state: FormState): string {
     `Pay ${amount}`,
     html`${summary(session)}
 <section aria-labelledby="how">
-<h1 id="how">Pay by card</h1>
+<h2 id="how">Pay by card</h2>
 ${state.declined === null ? null : html`<p class="alert" role="alert">${state.declined}</p>`}
 <form method="post" action="/pay/${session.id}" novalidate>
 ${emailField(session, state)}
@@ -79,7 +79,7 @@ export function authenticationPage(session: SessionRecord): string {
     'Approve this payment',
     html`${summary(session)}
 <section aria-labelledby="approve">
-<h1 id="approve">Your bank asks</h1>
+<h2 id="approve">Your bank asks</h2>
 <p>Do you approve the payment of ${readableAmount(session.amountTotal, session.currency)}?</p>
 <form method="post" action="/pay/${session.id}/authenticate">
 <button type="submit" name="answer" value="approve">Approve</button>
