@@ -308,6 +308,14 @@ describe('posting rules · each row of the table · debits and credits', () => {
       ],
     ],
     [
+      'clawback from a payee who owes already',
+      clawbackEntry({ ...payee, ...eye, amountMinor: m(450), payableMinor: m(-100) }),
+      [
+        ['1150', 450],
+        ['5000', -450],
+      ],
+    ],
+    [
       'clawback beyond what is owed',
       clawbackEntry({ ...payee, ...eye, amountMinor: m(450), payableMinor: m(100) }),
       [

@@ -74,6 +74,7 @@ describe('tiePayout', () => {
     ['a charge nobody knows', movement('charge', 'ch_9', 100), 'unknown_source'],
     ['a charge of another amount', movement('charge', 'ch_1', 49_901), 'amount_differs'],
     ['a charge with the sign turned', movement('charge', 'ch_1', -49_900), 'amount_differs'],
+    ['a refund that failed by another amount', movement('refund_failure', 're_1', 19_999), 'amount_differs'],
     ['a refund that names a charge', movement('refund', 'ch_1', 49_900), 'unknown_source'],
     ['a charge of nothing', movement('charge', null, 100), 'no_source'],
     ['a category without a name', movement('topup', 'tu_1', 100), 'unknown_category'],

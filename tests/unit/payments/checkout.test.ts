@@ -60,6 +60,20 @@ describe('checkoutAmount', () => {
       ['Left to pay', 2_491],
     ]);
   });
+  test('what is due today · with its derivation · counts what falls due today and not what does tomorrow', () => {
+    const answer = checkoutAmount({
+      purpose: 'deposit',
+      dues,
+      paidMinor: minor(100),
+      lenderPaidMinor: minor(0),
+      today: clinicDate('2026-03-01'),
+    });
+    expect(answer.ok && answer.why.steps).toEqual([
+      { label: 'deposit', amountMinor: 499, text: 'due 2026-03-01' },
+      { label: 'Paid', amountMinor: -100 },
+      { label: 'Due now', amountMinor: 399 },
+    ]);
+  });
 });
 
 describe('a checkout’s life', () => {
