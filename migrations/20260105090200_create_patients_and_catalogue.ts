@@ -16,6 +16,8 @@ export async function up(db: Knex): Promise<void> {
       created_at DATETIME(3) NOT NULL,
       version INT UNSIGNED NOT NULL DEFAULT 1,
       KEY patients_site_name (site_id, family_name, given_name),
+      KEY patients_site_born (site_id, born_on),
+      KEY patients_site_email (site_id, email),
       CONSTRAINT patients_site FOREIGN KEY (site_id) REFERENCES sites (site_id)
     )`,
     `CREATE TABLE prescriptions (
@@ -23,7 +25,7 @@ export async function up(db: Knex): Promise<void> {
       patient_id INT UNSIGNED NOT NULL,
       eye CHAR(2) NOT NULL,
       typed_sphere_md INT NOT NULL,
-      typed_cylinder_md INT NOT NULL,
+      typed_cylinder_md INT NULL,
       typed_axis_deg SMALLINT UNSIGNED NULL,
       sphere_md INT NOT NULL,
       cylinder_md INT NOT NULL,
@@ -62,6 +64,7 @@ export async function up(db: Knex): Promise<void> {
       currency CHAR(3) NOT NULL,
       in_force_on DATE NULL,
       content JSON NOT NULL,
+      costs JSON NOT NULL,
       content_hash CHAR(64) NOT NULL,
       created_by INT UNSIGNED NOT NULL,
       created_at DATETIME(3) NOT NULL,

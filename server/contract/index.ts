@@ -1,12 +1,24 @@
+import * as catalogue from './catalogue.ts';
 import * as courses from './courses.ts';
 import type { Contract } from './define.ts';
 import * as delivery from './delivery.ts';
 import * as operations from './operations.ts';
+import * as patients from './patients.ts';
 import * as payments from './payments.ts';
 import * as portal from './portal.ts';
+import * as quotes from './quotes.ts';
 
 /** One file per feature; the registry that binds, documents and tests every operation. */
-const FILES: readonly Readonly<Record<string, unknown>>[] = [operations, courses, payments, delivery, portal];
+const FILES: readonly Readonly<Record<string, unknown>>[] = [
+  operations,
+  patients,
+  catalogue,
+  quotes,
+  courses,
+  payments,
+  delivery,
+  portal,
+];
 
 function isContract(value: unknown): value is Contract {
   return (

@@ -83,7 +83,8 @@ export const patientQuoteSchema = z
     state: z.enum(['issued', 'accepted', 'lapsed', 'withdrawn', 'superseded']),
     patientName: z.string(),
     givenName: z.string(),
-    surgeonName: z.string(),
+    /** null on an estimate: no surgeon has approved a plan. */
+    surgeonName: z.string().nullable(),
     currency: currencyField,
     issuedOn: dayField,
     validUntil: dayField,

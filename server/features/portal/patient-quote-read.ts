@@ -34,7 +34,7 @@ interface QuoteRow {
 }
 
 interface QuoteContent {
-  readonly surgeonName: string;
+  readonly surgeonName: string | null;
   readonly options: readonly {
     readonly label: string;
     readonly input: CourseInput;
