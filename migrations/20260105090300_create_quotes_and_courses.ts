@@ -49,6 +49,7 @@ export async function up(db: Knex): Promise<void> {
       quote_id INT UNSIGNED NOT NULL,
       quote_version_id INT UNSIGNED NOT NULL,
       token_hash BINARY(32) NOT NULL,
+      sent_to VARCHAR(254) NULL,
       expires_at DATETIME(3) NOT NULL,
       revoked_at DATETIME(3) NULL,
       first_opened_at DATETIME(3) NULL,

@@ -1,5 +1,9 @@
 import express, { type Express } from 'express';
 import { pinoHttp } from 'pino-http';
+import { catalogueRoutes } from '#server/features/catalogue/index';
+import { coursesRoutes, openCourse } from '#server/features/courses/index';
+import { patientsRoutes } from '#server/features/patients/index';
+import { quotesRoutes } from '#server/features/quotes/index';
 import type { Gateways } from '#server/gateways/index';
 import { bindRoutes, type Identity } from '#server/http/bind';
 import { contentPolicy, serveClient } from '#server/http/client-files';
@@ -13,11 +17,21 @@ export type AppDeps = Deps & { readonly gateways: Gateways };
 
 /** Every route of the application, features in their order. */
 export function allRoutes(deps: AppDeps): BoundRoute[] {
-  return [...operationsRoutes(deps)];
+  return [
+    ...operationsRoutes(deps),
+    ...catalogueRoutes(deps),
+    ...patientsRoutes(deps),
+    ...quotesRoutes(deps),
+    ...coursesRoutes(deps),
+  ];
 }
 
 /** Who listens to which facts, in one place. */
-export function subscribeAll(_deps: AppDeps): void {}
+export function subscribeAll(deps: AppDeps): void {
+  deps.facts.subscribe('quote.accepted', async (trx, fact) => {
+    await openCourse(trx, deps, fact);
+  });
+}
 
 /** Builds the http application; listening, workers and the signal handlers are main's. */
 export function createApp(deps: AppDeps, identity: Identity, clientFolder: string | undefined): Express {

@@ -4,6 +4,10 @@ import { amountField, currencyField, dayField, eyeField, lateralityField, minorF
 
 /** A priced course as it travels: what the engine gives, whole, for the clinic's own people. Costs are never in it. */
 
+function list<S extends z.ZodType>(schema: S) {
+  return z.array(schema).readonly();
+}
+
 const stepSchema = z.union([
   z.object({ label: z.string(), text: z.string() }),
   z.object({ label: z.string(), amountMinor: minorField }),
@@ -42,7 +46,7 @@ const lineSchema = z.object({
   laterality: lateralityField,
   amountMinor: minorField,
   taxClassId: z.string().nullable(),
-  why: z.array(stepSchema),
+  why: list(stepSchema),
 });
 
 const taxSchema = z.object({
@@ -78,7 +82,7 @@ const creditSchema = z.object({
   payableMinor: amountField,
   nominalRateBp: z.int(),
   aprBp: z.int(),
-  instalments: z.array(z.object({ dueOn: dayField, amountMinor: amountField })),
+  instalments: list(z.object({ dueOn: dayField, amountMinor: amountField })),
 });
 
 const obligationSchema = z.object({
@@ -96,7 +100,7 @@ const obligationSchema = z.object({
   laterality: lateralityField,
   standAloneMinor: amountField,
   allocatedMinor: amountField,
-  parts: z.array(
+  parts: list(
     z.object({
       id: z.string(),
       label: z.string(),
@@ -129,7 +133,7 @@ const coverSchema = z.object({
   thresholdOf: z.enum(['spherical_equivalent', 'cylinder', 'either']),
   examinationEveryMonths: z.int().nullable(),
   priceOutOfCoverMinor: amountField,
-  conditions: z.array(z.string()),
+  conditions: list(z.string()),
 });
 
 const packageSchema = z.object({
@@ -175,27 +179,30 @@ export const pricedCourseSchema = z
     standing: z.enum(['quotable', 'estimate']),
     quotedOn: dayField,
     validUntil: dayField,
-    lines: z.array(lineSchema),
+    lines: list(lineSchema),
     columns: columnsSchema,
     shares: columnsSchema,
-    taxes: z.array(taxSchema),
+    taxes: list(taxSchema),
     netMinor: minorField,
     taxMinor: minorField,
     totalMinor: amountField,
     depositMinor: amountField,
-    schedule: z.array(dueSchema),
+    schedule: list(dueSchema),
     credit: creditSchema.nullable(),
-    obligations: z.array(obligationSchema),
-    cancellation: z.array(cancellationSchema),
-    cover: z.array(coverSchema),
-    included: z.array(z.object({ ruleId: z.string(), label: z.string() })),
-    notIncluded: z.array(z.string()),
+    obligations: list(obligationSchema),
+    cancellation: list(cancellationSchema),
+    cover: list(coverSchema),
+    included: list(z.object({ ruleId: z.string(), label: z.string() })),
+    notIncluded: list(z.string()),
     package: packageSchema.nullable(),
-    approvals: z.array(approvalSchema),
-    warnings: z.array(warningSchema),
+    approvals: list(approvalSchema),
+    warnings: list(warningSchema),
   })
   .meta({ id: 'PricedCourse' }) satisfies z.ZodType<PricedCourse>;
 
 export const refusalSchema = z
   .object({ field: z.string(), code: z.string(), words: z.string(), change: z.string() })
   .meta({ id: 'PriceRefusal' });
+
+/** A priced course as a handler sends it. */
+export type PricedWire = z.input<typeof pricedCourseSchema>;

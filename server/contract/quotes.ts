@@ -301,7 +301,7 @@ export const revokeQuoteLinks = defineContract({
 
 export const withdrawQuote = defineContract({
   id: 'withdrawQuote',
-  summary: 'Withdraw a quote that was not accepted, with a reason; its links stop working',
+  summary: 'Withdraw a quote that was not accepted, with a reason; its links then say so',
   method: 'post',
   path: '/api/quotes/:quoteId/withdraw',
   access: WRITERS,

@@ -1,5 +1,6 @@
 import type { CourseInput, PricedCourse } from '#domain/pricing/index';
 import type { ClinicDate } from '#domain/time/index';
+import type { QuoteDraft } from './draft.ts';
 
 /** What a version of a quote froze when it was issued: never changed again (invariant 15). */
 export interface QuoteContent {
@@ -13,6 +14,8 @@ export interface QuoteContent {
   readonly surgeonName: string | null;
   readonly approvedPlanId: number | null;
   readonly options: readonly QuoteOption[];
+  /** The draft it was made from, to see whether the draft has moved on since. */
+  readonly draft: QuoteDraft;
 }
 
 export interface QuoteOption {

@@ -1,0 +1,10 @@
+export { type Acceptance, acceptQuote } from './accept-quote.ts';
+export { createQuote } from './create-quote.ts';
+export { type IssueWanted, issueQuote } from './issue-quote.ts';
+export { lapseQuotes } from './lapse-quotes.ts';
+export { contentHashOf, priceOptions } from './price-options.ts';
+export { revokeQuoteLinks, sendQuoteAgain } from './quote-links.ts';
+export { type QuoteRow, quoteOf, type VersionRow, versionsOf } from './quote-repository.ts';
+export { quotesRoutes } from './quotes-routes.ts';
+export { saveDraft } from './save-draft.ts';
+export { withdrawQuote } from './withdraw-quote.ts';
