@@ -40,6 +40,8 @@ export function openDatabase(url: string, pool: { min: number; max: number } = {
       database: at.pathname.slice(1),
       timezone: 'Z',
       supportBigNumbers: true,
+      // JSON arrives as its text on every server, MariaDB's extended metadata or not.
+      jsonStrings: true,
       typeCast: castField,
     },
     pool,
