@@ -13,7 +13,7 @@ export interface QuoteDraft {
 }
 
 export interface OptionDraft {
-  /** What tells the options apart: "Both eyes on one day". */
+  /** What tells the options apart, where somebody gave it a name; else optionWords says it. */
   readonly label: string;
   /** null: this eye is not treated. */
   readonly procedures: Readonly<Record<Eye, string | null>>;
@@ -39,6 +39,16 @@ export function optionLetter(index: number): string {
   return String.fromCharCode(65 + index);
 }
 
+/** What an option is called: its own name, else the eyes and days: "Both eyes on one day", "Right eye". */
+export function optionWords(option: OptionDraft): string {
+  const named = option.label.trim();
+  if (named !== '') return named;
+  const { OD, OS } = option.procedures;
+  if (OD === null) return OS === null ? 'Nothing chosen yet' : 'Left eye';
+  if (OS === null) return 'Right eye';
+  return option.surgery.plan === 'staged' ? 'One eye after the other' : 'Both eyes on one day';
+}
+
 const NOTHING: PrescriptionFields = { sphere: '', cylinder: '', axis: '', vertex: '' };
 
 /** A draft to begin with: what is known of the eyes, the procedures the plan names first, both eyes on one day. */
@@ -56,7 +66,7 @@ export function newDraft(known: {
     prescriptions: { OD: known.prescriptions.OD ?? NOTHING, OS: known.prescriptions.OS ?? NOTHING },
     options: [
       {
-        label: 'Both eyes on one day',
+        label: '',
         procedures: { OD: procedure('OD'), OS: procedure('OS') },
         covers: { OD: null, OS: null },
         surgery: { plan: 'same_session', on: null },

@@ -9,7 +9,13 @@ import {
   quoteCourse,
   type Refusal,
 } from '#domain/pricing/index';
-import { type OptionDraft, optionInput, type QuoteDraft, type QuoteFacts } from '#domain/quotes/index';
+import {
+  type OptionDraft,
+  optionInput,
+  optionWords,
+  type QuoteDraft,
+  type QuoteFacts,
+} from '#domain/quotes/index';
 import type { ClinicDate } from '#domain/time/index';
 import { newestPlan, type PlanRow } from '#server/features/patients/index';
 import type { Db, Trx } from '#server/platform/db';
@@ -29,7 +35,7 @@ export type PricedOption =
 export function priceOptions(draft: QuoteDraft, facts: QuoteFacts, book: PriceBook): PricedOption[] {
   const compiled = compilePriceBook(book);
   return draft.options.map((option: OptionDraft): PricedOption => {
-    const { label } = option;
+    const label = optionWords(option);
     const read = optionInput(draft, option, facts, book);
     if (!read.ok) return { ok: false, label, refusals: read.refusals };
     const result = quoteCourse(read.input, compiled);

@@ -6,6 +6,7 @@ import {
   newDraft,
   type OptionDraft,
   optionInput,
+  optionWords,
   parseRate,
   priceOption,
   type QuoteDraft,
@@ -52,6 +53,20 @@ describe('new draft', () => {
       book: demoPriceBook,
     });
     expect(other.options[0]).toMatchObject({ procedures: { OD: 'lasik', OS: null }, priceListId: null });
+  });
+});
+
+describe('name of an option', () => {
+  test.each([
+    [{}, 'Both eyes on one day'],
+    [{ label: ' The short way ' }, 'The short way'],
+    [{ procedures: { OD: 'lasik', OS: null } }, 'Right eye'],
+    [{ procedures: { OD: null, OS: 'lasik' } }, 'Left eye'],
+    [{ procedures: { OD: null, OS: null } }, 'Nothing chosen yet'],
+    [{ surgery: { plan: 'staged', on: { OD: null, OS: null } } }, 'One eye after the other'],
+  ] as const)('%j · is told in words', (option, words) => {
+    const [made] = draftOf(option).options;
+    expect(made && optionWords(made)).toBe(words);
   });
 });
 
