@@ -30,23 +30,19 @@ function castField(field: TypeCastField, next: () => unknown): unknown {
 /** Opens a pool on a mysql:// URL. Nothing is sent until the first query. */
 export function openDatabase(url: string, pool: { min: number; max: number } = { min: 0, max: 10 }): Db {
   const at = new URL(url);
-  return knex({
-    client: 'mysql2',
-    connection: {
-      host: at.hostname,
-      port: Number(at.port === '' ? 3306 : at.port),
-      user: decodeURIComponent(at.username),
-      password: decodeURIComponent(at.password),
-      database: at.pathname.slice(1),
-      timezone: 'Z',
-      supportBigNumbers: true,
-      // JSON arrives as its text on every server, MariaDB's extended metadata or not.
-      jsonStrings: true,
-      typeCast: castField,
-    },
-    pool,
-    acquireConnectionTimeout: 10_000,
-  });
+  const connection = {
+    host: at.hostname,
+    port: Number(at.port === '' ? 3306 : at.port),
+    user: decodeURIComponent(at.username),
+    password: decodeURIComponent(at.password),
+    database: at.pathname.slice(1),
+    timezone: 'Z',
+    supportBigNumbers: true,
+    // JSON arrives as its text on every server, MariaDB's extended metadata or not.
+    jsonStrings: true,
+    typeCast: castField,
+  };
+  return knex({ client: 'mysql2', connection, pool, acquireConnectionTimeout: 10_000 });
 }
 
 /** An Instant as MariaDB takes it for a DATETIME(3) column. */

@@ -1,11 +1,12 @@
 import type { ProofControlView } from '#contract/proof';
 import { type Minor, subtract, sum } from '#domain/money/index';
-import type { ClinicDate } from '#domain/time/index';
+import type { ClinicDate, Instant } from '#domain/time/index';
 import type { Trx } from '#server/platform/db';
 
 /** What a control looks at: everything booked up to a day. Proof is of the whole clinic; its readers see all sites. */
 export interface ProofScope {
   readonly asOf: ClinicDate;
+  readonly now: Instant;
 }
 
 /** One thing computed two ways. */

@@ -6,7 +6,9 @@ import { rawRows } from '#server/platform/db';
 import type { Deps } from '#server/platform/deps';
 import { inSnapshot } from '#server/platform/transaction';
 import { type ProofControl, runControl } from './control.ts';
+import { AUDIT_CONTROLS } from './controls/audit-controls.ts';
 import { COURSE_CONTROLS } from './controls/course-controls.ts';
+import { FEE_CONTROLS } from './controls/fee-controls.ts';
 import { LEDGER_CONTROLS } from './controls/ledger-controls.ts';
 import { TAKINGS_CONTROLS } from './controls/takings-controls.ts';
 
@@ -15,6 +17,8 @@ export const CONTROLS: readonly ProofControl[] = [
   ...LEDGER_CONTROLS,
   ...COURSE_CONTROLS,
   ...TAKINGS_CONTROLS,
+  ...FEE_CONTROLS,
+  ...AUDIT_CONTROLS,
 ];
 
 /** Computes every control as of a day in one consistent snapshot. */
@@ -30,7 +34,8 @@ export async function computeProof(deps: Pick<Deps, 'db' | 'clock'>, asOf: Clini
     );
     const day = asOf ?? latest?.day_on ?? dayOf(deps.clock.now(), 'UTC');
     const controls = [];
-    for (const control of CONTROLS) controls.push(await runControl(trx, control, { asOf: day }));
+    for (const control of CONTROLS)
+      controls.push(await runControl(trx, control, { asOf: day, now: deps.clock.now() }));
     return {
       asOf: day,
       computedAt: deps.clock.now(),

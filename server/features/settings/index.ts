@@ -1,0 +1,1 @@
+export { settingsRoutes } from './settings-routes.ts';

@@ -1,0 +1,2 @@
+export { LiveStreams } from './live.ts';
+export { todayRoutes } from './today-routes.ts';
