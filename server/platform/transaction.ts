@@ -20,5 +20,5 @@ export async function inTransaction<T>(db: Db, work: (trx: Trx) => Promise<T>): 
 
 /** Reads in one consistent snapshot: what Proof and closing need, for several statements must see the same rows. */
 export async function inSnapshot<T>(db: Db, work: (trx: Trx) => Promise<T>): Promise<T> {
-  return await db.transaction(work, { isolationLevel: 'repeatable read', readOnly: true });
+  return await db.transaction(work, { isolationLevel: 'repeatable read' });
 }

@@ -23,6 +23,9 @@ const PAYOUTS = `
          SUM(b.amount_minor) AS gross, SUM(b.fee_minor) AS fee, SUM(b.net_minor) AS net, COUNT(b.balance_transaction_id) AS movements
   FROM payouts p LEFT JOIN balance_transactions b ON b.payout_id = p.payout_id AND b.category <> 'payout'`;
 
+const BY_PAYOUT =
+  'GROUP BY p.payout_id, p.currency, p.amount_minor, p.created_on, p.arrives_on, p.state, p.tied_at';
+
 function asPayout(row: PayoutRow): PayoutView {
   const amountMinor = readMinor(row.amount_minor);
   const movementsMinor = readMinor(row.net);
@@ -50,18 +53,13 @@ function asPayout(row: PayoutRow): PayoutView {
 /** Every payout, newest first. The processor pays the clinic, not a site: any site's desk and manager see them. */
 export async function readPayouts(db: Db): Promise<PayoutView[]> {
   return (
-    await rawRows<PayoutRow>(
-      db,
-      `${PAYOUTS} GROUP BY p.payout_id ORDER BY p.arrives_on DESC, p.payout_id DESC`,
-    )
+    await rawRows<PayoutRow>(db, `${PAYOUTS} ${BY_PAYOUT} ORDER BY p.arrives_on DESC, p.payout_id DESC`)
   ).map(asPayout);
 }
 
 /** One payout, undefined when there is none. */
 export async function readPayout(db: Db, payoutId: number): Promise<PayoutView | undefined> {
-  const [row] = await rawRows<PayoutRow>(db, `${PAYOUTS} WHERE p.payout_id = ? GROUP BY p.payout_id`, [
-    payoutId,
-  ]);
+  const [row] = await rawRows<PayoutRow>(db, `${PAYOUTS} WHERE p.payout_id = ? ${BY_PAYOUT}`, [payoutId]);
   return row ? asPayout(row) : undefined;
 }
 

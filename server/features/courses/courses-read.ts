@@ -88,7 +88,8 @@ async function receiptLines(db: Db, courseId: number): Promise<CourseView['recei
             GROUP_CONCAT(t.tender ORDER BY t.tender_no) AS tenders, v.receipt_id IS NOT NULL AS voided
      FROM receipts r JOIN receipt_tenders t ON t.receipt_id = r.receipt_id
      LEFT JOIN receipt_voids v ON v.receipt_id = r.receipt_id
-     WHERE r.course_id = ? GROUP BY r.receipt_id ORDER BY r.receipt_id`,
+     WHERE r.course_id = ?
+     GROUP BY r.receipt_id, r.number, r.occurred_on, r.total_minor, v.receipt_id ORDER BY r.receipt_id`,
     [courseId],
   );
   return rows.map((row) => ({

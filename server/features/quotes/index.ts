@@ -2,7 +2,7 @@ export { type Acceptance, acceptQuote } from './accept-quote.ts';
 export { createQuote } from './create-quote.ts';
 export { type IssueWanted, issueQuote } from './issue-quote.ts';
 export { lapseQuotes } from './lapse-quotes.ts';
-export { contentHashOf, priceOptions } from './price-options.ts';
+export { contentHashOf, priceOptions, quoteFacts } from './price-options.ts';
 export { revokeQuoteLinks, sendQuoteAgain } from './quote-links.ts';
 export { type QuoteRow, quoteOf, type VersionRow, versionsOf } from './quote-repository.ts';
 export { quotesRoutes } from './quotes-routes.ts';

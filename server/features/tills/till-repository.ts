@@ -140,7 +140,7 @@ export async function expectedCash(
        SELECT r.receipt_id, r.change_minor, SUM(t.amount_minor) AS cash FROM receipts r
        JOIN receipt_tenders t ON t.receipt_id = r.receipt_id AND t.tender = 'cash'
        LEFT JOIN receipt_voids v ON v.receipt_id = r.receipt_id
-       WHERE r.till_session_id = ? AND v.receipt_id IS NULL GROUP BY r.receipt_id) x`,
+       WHERE r.till_session_id = ? AND v.receipt_id IS NULL GROUP BY r.receipt_id, r.change_minor) x`,
     [session.tillSessionId],
   );
   const zone = await zoneOf(trx, session.siteId);

@@ -50,7 +50,7 @@ async function surgeryOn(deps: Read, siteId: number, day: ClinicDate): Promise<T
      FROM course_eyes e JOIN courses c ON c.course_id = e.course_id JOIN patients p ON p.patient_id = c.patient_id
      JOIN users u ON u.user_id = c.surgeon_user_id
      WHERE c.site_id = ? AND ((e.state = 'planned' AND e.planned_on = ?) OR (e.state = 'done' AND e.done_on = ?))
-     GROUP BY c.course_id ORDER BY p.family_name, p.given_name`,
+     GROUP BY c.course_id, c.number, c.patient_id, p.given_name, p.family_name, u.name ORDER BY p.family_name, p.given_name`,
     [siteId, day, day],
   );
   const found: TodayView['surgery'] = [];
@@ -130,7 +130,7 @@ async function overdue(deps: Read, siteId: number, day: ClinicDate): Promise<Tod
      LEFT JOIN (SELECT r.course_id, SUM(r.applied_minor) AS paid FROM receipts r LEFT JOIN receipt_voids v ON v.receipt_id = r.receipt_id
                 WHERE v.receipt_id IS NULL GROUP BY r.course_id) x ON x.course_id = c.course_id
      WHERE c.site_id = ? AND NOT EXISTS (SELECT 1 FROM course_eyes e WHERE e.course_id = c.course_id AND e.state = 'planned' AND e.planned_on = ?)
-     GROUP BY c.course_id, x.paid HAVING SUM(d.amount_minor) > COALESCE(x.paid, 0) ORDER BY since, c.course_id LIMIT 50`,
+     GROUP BY c.course_id, c.number, p.given_name, p.family_name, x.paid HAVING SUM(d.amount_minor) > COALESCE(x.paid, 0) ORDER BY since, c.course_id LIMIT 50`,
     [day, siteId, day],
   );
   const found: TodayView['dueNow'] = [];

@@ -19,7 +19,8 @@ const receipts: ProofControl = {
     }>(
       trx,
       `SELECT r.receipt_id, r.number, SUM(t.amount_minor) - r.change_minor + r.rounding_minor AS tendered, r.total_minor
-       FROM receipts r LEFT JOIN receipt_tenders t ON t.receipt_id = r.receipt_id WHERE r.booked_on <= ? GROUP BY r.receipt_id`,
+       FROM receipts r LEFT JOIN receipt_tenders t ON t.receipt_id = r.receipt_id WHERE r.booked_on <= ?
+       GROUP BY r.receipt_id, r.number, r.change_minor, r.rounding_minor, r.total_minor`,
       [asOf],
     );
     return rows.map((row) => ({
@@ -47,7 +48,7 @@ const receiptEntries: ProofControl = {
        LEFT JOIN journal_entries e ON e.source_type = 'receipt' AND e.source_id = r.receipt_id
        LEFT JOIN receipt_voids v ON v.receipt_id = r.receipt_id
        LEFT JOIN journal_entries x ON x.source_type = 'receipt_void' AND x.source_id = r.receipt_id
-       WHERE r.booked_on <= ? GROUP BY r.receipt_id HAVING entries <> 1 OR voids <> reversals`,
+       WHERE r.booked_on <= ? GROUP BY r.receipt_id, r.number HAVING entries <> 1 OR voids <> reversals`,
       [asOf],
     );
     const [count] = await rawRows<{ n: number }>(
