@@ -14,7 +14,7 @@ import { patientsRoutes } from '#server/features/patients/index';
 import { paymentsRoutes, takeWebhook } from '#server/features/payments/index';
 import { patientOfRequest, portalRoutes } from '#server/features/portal/index';
 import { proofRoutes } from '#server/features/proof/index';
-import { quotesRoutes } from '#server/features/quotes/index';
+import { discountApproval, quotesRoutes } from '#server/features/quotes/index';
 import { settingsRoutes } from '#server/features/settings/index';
 import { tillsRoutes } from '#server/features/tills/index';
 import { type LiveStreams, todayRoutes } from '#server/features/today/index';
@@ -52,7 +52,7 @@ export function allRoutes(deps: AppDeps, parts: AppParts): BoundRoute[] {
     ...operationsRoutes(deps),
     ...usersRoutes(deps, parts.people),
     ...settingsRoutes(deps),
-    ...approvalsRoutes(deps, []),
+    ...approvalsRoutes(deps, [discountApproval]),
     ...auditRoutes(deps),
     ...patientsRoutes(deps),
     ...catalogueRoutes(deps),

@@ -145,6 +145,15 @@ export const quoteSchema = z
       })
       .nullable(),
     courseId: idField.nullable(),
+    /** The last time a discount over the limit was put to a second person. */
+    approval: z
+      .object({
+        state: z.enum(['asked', 'approved', 'refused', 'withdrawn']),
+        requestedBy: z.string(),
+        decidedBy: z.string().nullable(),
+        decisionNote: z.string().nullable(),
+      })
+      .nullable(),
   })
   .meta({ id: 'Quote' });
 
@@ -271,6 +280,19 @@ export const issueQuote = defineContract({
     /** Send no mail: the patient has no address, or takes the paper home. */
     withoutMail: z.boolean().default(false),
   }),
+  response: quoteSchema,
+  status: 201,
+  problems: ['conflict', 'refused'],
+});
+
+export const askDiscountApproval = defineContract({
+  id: 'askDiscountApproval',
+  summary: 'Ask a manager to agree to the discounts of the saved draft that are over the limit',
+  method: 'post',
+  path: '/api/quotes/:quoteId/approval',
+  access: WRITERS,
+  params: quoteParams,
+  body: z.strictObject({ draftVersion: z.int().min(1), reason: reasonField }),
   response: quoteSchema,
   status: 201,
   problems: ['conflict', 'refused'],

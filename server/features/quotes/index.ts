@@ -1,5 +1,6 @@
 export { type Acceptance, acceptQuote } from './accept-quote.ts';
 export { createQuote } from './create-quote.ts';
+export { discountApproval } from './discount-approval.ts';
 export { type IssueWanted, issueQuote } from './issue-quote.ts';
 export { lapseQuotes } from './lapse-quotes.ts';
 export { contentHashOf, priceOptions, quoteFacts } from './price-options.ts';

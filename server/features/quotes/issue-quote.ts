@@ -14,7 +14,8 @@ import type { Deps } from '#server/platform/deps';
 import { hint } from '#server/platform/live-hints';
 import { type FieldError, notFound, Problem, refused } from '#server/platform/problem';
 import { inTransaction } from '#server/platform/transaction';
-import { type PricedOption, priceOptions, quoteFacts } from './price-options.ts';
+import { discountsNotAgreed } from './discount-approval.ts';
+import { type AgreedOption, mustBePriced, priceOptions, quoteFacts } from './price-options.ts';
 import { sendLink } from './quote-links.ts';
 import { newestVersion, type QuoteRow } from './quote-repository.ts';
 import { mustBeNewest, quoteToWrite } from './save-draft.ts';
@@ -25,8 +26,6 @@ export interface IssueWanted {
   readonly options: readonly { readonly totalMinor: Minor; readonly contentHash: string }[];
   readonly withoutMail: boolean;
 }
-
-type Agreed = Extract<PricedOption, { ok: true }>;
 
 /**
  * Freezes the saved draft as the next version: the server prices every option anew, holds it against what the person saw, and
@@ -55,7 +54,7 @@ export async function issueQuote(
     const { facts, plan } = await quoteFacts(trx, quote.patientId, today);
     const options = mustBePriced(priceOptions(quote.draft, facts, book));
     mustBeAsSeen(options, wanted);
-    mustBeWithinLimit(options);
+    await mustBeAgreed(trx, quoteId, options);
     const content = contentOf(quote.draft, patient, plan, options);
     const version = await insertVersion(trx, deps, { quote, content, priceBookId, today, actor });
     await markIssued(trx, deps, quote);
@@ -75,27 +74,7 @@ export async function issueQuote(
   });
 }
 
-/** Every option priced, or every refusal of all of them at once. */
-function mustBePriced(options: readonly PricedOption[]): Agreed[] {
-  const fields: FieldError[] = options.flatMap((option, index) =>
-    option.ok
-      ? []
-      : option.refusals.map(({ field, words, change }) => ({
-          field: `options.${index}.${field}`,
-          message: `${words} ${change}`,
-        })),
-  );
-  if (fields.length > 0) {
-    throw new Problem('refused', {
-      reason: 'cannot_be_priced',
-      detail: `${fields.length === 1 ? 'One thing' : `${fields.length} things`} must be put right before this can be sent. The draft is kept.`,
-      fields,
-    });
-  }
-  return options.filter((option) => option.ok);
-}
-
-function mustBeAsSeen(options: readonly Agreed[], wanted: IssueWanted): void {
+function mustBeAsSeen(options: readonly AgreedOption[], wanted: IssueWanted): void {
   const fields: FieldError[] = [];
   options.forEach((option, index) => {
     const seen = wanted.options[index];
@@ -122,14 +101,14 @@ function mustBeAsSeen(options: readonly Agreed[], wanted: IssueWanted): void {
   }
 }
 
-function mustBeWithinLimit(options: readonly Agreed[]): void {
-  for (const [index, { input, priced }] of options.entries()) {
-    const [over] = priced.approvals;
+async function mustBeAgreed(trx: Trx, quoteId: number, options: readonly AgreedOption[]): Promise<void> {
+  for (const [index, option] of options.entries()) {
+    const [over] = await discountsNotAgreed(trx, quoteId, option);
     if (!over) continue;
-    const at = input.discounts.findIndex((discount) => discount.discountId === over.discountId);
+    const at = option.input.discounts.findIndex((discount) => discount.discountId === over.discountId);
     throw new Problem('refused', {
       reason: 'approval_needed',
-      detail: `${over.reason} of ${over.asked} is over your limit of ${over.ownLimit}. Give less, or have another person send it with their approval.`,
+      detail: `${over.reason} of ${over.asked} is over your limit of ${over.ownLimit}. Give less, or ask a manager to approve it.`,
       fields: [
         {
           field: `options.${index}.discounts.${at}.off`,
@@ -144,7 +123,7 @@ function contentOf(
   draft: QuoteDraft,
   patient: PatientRow,
   plan: PlanRow | undefined,
-  options: readonly Agreed[],
+  options: readonly AgreedOption[],
 ): QuoteContent {
   return {
     patient: { givenName: patient.givenName, familyName: patient.familyName, bornOn: patient.bornOn },

@@ -19,6 +19,7 @@ import {
 import type { ClinicDate } from '#domain/time/index';
 import { newestPlan, type PlanRow } from '#server/features/patients/index';
 import type { Db, Trx } from '#server/platform/db';
+import { type FieldError, Problem } from '#server/platform/problem';
 
 /** One option of a draft after the server's engine has had it. */
 export type PricedOption =
@@ -30,6 +31,31 @@ export type PricedOption =
       readonly contentHash: string;
     }
   | { readonly ok: false; readonly label: string; readonly refusals: readonly Refusal[] };
+
+export type AgreedOption = Extract<PricedOption, { ok: true }>;
+
+/**
+ * Every option priced.
+ * @throws Problem refused 'cannot_be_priced' with every refusal of every option at its field
+ */
+export function mustBePriced(options: readonly PricedOption[]): AgreedOption[] {
+  const fields: FieldError[] = options.flatMap((option, index) =>
+    option.ok
+      ? []
+      : option.refusals.map(({ field, words, change }) => ({
+          field: `options.${index}.${field}`,
+          message: `${words} ${change}`,
+        })),
+  );
+  if (fields.length > 0) {
+    throw new Problem('refused', {
+      reason: 'cannot_be_priced',
+      detail: `${fields.length === 1 ? 'One thing' : `${fields.length} things`} must be put right before this can be sent. The draft is kept.`,
+      fields,
+    });
+  }
+  return options.filter((option) => option.ok);
+}
 
 /** Prices every option of a draft with the same engine the browser has; the facts are the server's own. */
 export function priceOptions(draft: QuoteDraft, facts: QuoteFacts, book: PriceBook): PricedOption[] {

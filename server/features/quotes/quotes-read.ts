@@ -57,6 +57,7 @@ export async function readQuote(deps: ReadDeps, quoteId: number, actor: StaffAct
     links: await linksOf(db, quoteId, deps.clock.now()),
     acceptance,
     courseId,
+    approval: await lastApproval(db, quoteId),
   };
 }
 
@@ -180,6 +181,29 @@ async function endOf(
           recordedBy: row.recorded_by,
         };
   return { acceptance, courseId: row.course_id, counsellor: row.counsellor };
+}
+
+async function lastApproval(db: Db, quoteId: number): Promise<QuoteView['approval']> {
+  const [row] = await rawRows<{
+    state: 'asked' | 'approved' | 'refused' | 'withdrawn';
+    requested_by: string;
+    decided_by: string | null;
+    decision_note: string | null;
+  }>(
+    db,
+    `SELECT a.state, q.name AS requested_by, d.name AS decided_by, a.decision_note
+     FROM approvals a JOIN users q ON q.user_id = a.requested_by LEFT JOIN users d ON d.user_id = a.decided_by
+     WHERE a.subject_type = 'quote' AND a.subject_id = ? ORDER BY a.approval_id DESC LIMIT 1`,
+    [quoteId],
+  );
+  return row
+    ? {
+        state: row.state,
+        requestedBy: row.requested_by,
+        decidedBy: row.decided_by,
+        decisionNote: row.decision_note,
+      }
+    : null;
 }
 
 /** A priced option as the API sends it. */

@@ -8,6 +8,7 @@ import { notFound } from '#server/platform/problem';
 import { inTransaction } from '#server/platform/transaction';
 import { acceptQuote } from './accept-quote.ts';
 import { createQuote } from './create-quote.ts';
+import { askDiscountApproval } from './discount-approval.ts';
 import { issueQuote } from './issue-quote.ts';
 import { priceOptions, quoteFacts } from './price-options.ts';
 import { revokeQuoteLinks, sendQuoteAgain } from './quote-links.ts';
@@ -54,6 +55,10 @@ function lifeRoutes(deps: Deps): BoundRoute[] {
   return [
     route(contract.issueQuote, async ({ params, body, actor }) => {
       await issueQuote(deps, params.quoteId, body, actor);
+      return await readQuote(deps, params.quoteId, actor);
+    }),
+    route(contract.askDiscountApproval, async ({ params, body, actor }) => {
+      await askDiscountApproval(deps, params.quoteId, body, actor);
       return await readQuote(deps, params.quoteId, actor);
     }),
     route(contract.sendQuoteAgain, async ({ params, actor }) => {
