@@ -6,3 +6,4 @@ export {
   type MadeDocument,
   type StoredDocument,
 } from './document-for.ts';
+export { documentMakers, peopleMails } from './makers.ts';

@@ -1,7 +1,7 @@
-import type { Minor } from '#domain/money/index';
+import { type Minor, subtract, sum, ZERO } from '#domain/money/index';
 import { addMs, type Instant, msOf } from '#domain/time/index';
 import { recordAudit } from '#server/features/audit/index';
-import { type CourseRow, courseMoney, lockCourse } from '#server/features/courses/index';
+import { type CourseMoney, type CourseRow, courseMoney, lockCourse } from '#server/features/courses/index';
 import { type Checkout, type CheckoutRequest, ProcessorError } from '#server/gateways/index';
 import type { Actor } from '#server/platform/actor';
 import type { Trx } from '#server/platform/db';
@@ -80,10 +80,21 @@ async function amountToPay(
   purpose: CheckoutPurpose,
 ): Promise<Minor> {
   const money = await courseMoney(trx, deps, course.courseId);
-  const amount = purpose === 'deposit' ? money.dueNowMinor : money.leftMinor;
+  const amount = purpose === 'deposit' ? depositNow(money) : money.leftMinor;
   if (amount <= 0)
     throw refused('nothing_due', 'Nothing is due on this course now; there is nothing to pay.');
   return amount;
+}
+
+/** The deposit as far as it is unpaid; once it is paid, whatever else is due today. */
+function depositNow(money: CourseMoney): Minor {
+  const deposits = money.dues.filter((due) => due.kind === 'deposit');
+  const unpaid = deposits.map((due) => {
+    const paid = money.paidFor.dues.find((each) => each.dueNo === due.dueNo)?.paidMinor ?? ZERO;
+    return subtract(due.amountMinor, paid);
+  });
+  const left = sum(unpaid);
+  return left > 0 ? left : money.dueNowMinor;
 }
 
 async function storeAttempt(
