@@ -3,10 +3,14 @@ import tailwindcss from '@tailwindcss/vite';
 import react from '@vitejs/plugin-react';
 import { defineConfig } from 'vite';
 
+/** Where the interface runs while the client is developed with `npx vite`. */
+const API = process.env.TENDERLIGHT_API ?? 'http://127.0.0.1:5180';
+
 export default defineConfig({
   root: fileURLToPath(new URL('./client', import.meta.url)),
   plugins: [react(), tailwindcss()],
-  resolve: { conditions: ['source', 'module', 'browser', 'development|production'] },
+  resolve: { conditions: ['tl-source', 'module', 'browser', 'development|production'] },
+  server: { proxy: { '/api': API, '/webhooks': API } },
   build: {
     outDir: fileURLToPath(new URL('./dist/client', import.meta.url)),
     emptyOutDir: true,

@@ -21,8 +21,8 @@ function project(name: string, options: { servers?: boolean; timeoutMs?: number 
 
 export default defineConfig({
   root,
-  resolve: { conditions: ['source'] },
-  ssr: { resolve: { conditions: ['source'] } },
+  resolve: { conditions: ['tl-source'] },
+  ssr: { resolve: { conditions: ['tl-source'] } },
   test: {
     pool: 'forks',
     maxWorkers: 2,
