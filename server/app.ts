@@ -7,7 +7,7 @@ import { catalogueRoutes } from '#server/features/catalogue/index';
 import { closingRoutes } from '#server/features/closing/index';
 import { coursesRoutes, openCourse } from '#server/features/courses/index';
 import { deliveryRoutes } from '#server/features/delivery/index';
-import type { DocumentMakers } from '#server/features/documents/index';
+import { type DocumentMakers, documentsRoutes, subscribeDocuments } from '#server/features/documents/index';
 import { accrueCourseFees, feesRoutes } from '#server/features/fees/index';
 import { ledgerRoutes } from '#server/features/ledger/index';
 import { patientsRoutes } from '#server/features/patients/index';
@@ -62,9 +62,10 @@ export function allRoutes(deps: AppDeps, parts: AppParts): BoundRoute[] {
     ...deliveryRoutes(deps),
     ...feesRoutes(deps),
     ...tillsRoutes(deps),
-    ...closingRoutes(deps, parts.makers),
+    ...closingRoutes(deps),
     ...bankRoutes(deps),
     ...ledgerRoutes(deps),
+    ...documentsRoutes(deps, parts.makers),
     ...todayRoutes(deps, parts.streams),
     ...proofRoutes(deps),
     ...portalRoutes(deps, parts.makers),
@@ -79,6 +80,7 @@ export function subscribeAll({ facts, ...deps }: AppDeps): void {
   });
   facts.subscribe('eye.done', (trx, fact) => accrueCourseFees(trx, withFacts, fact.courseId));
   facts.subscribe('receipt.recorded', (trx, fact) => accrueCourseFees(trx, withFacts, fact.courseId));
+  subscribeDocuments(withFacts);
 }
 
 /** Builds the http application; listening, workers and the signal handlers are main's. */

@@ -132,14 +132,3 @@ export const closeDay = defineContract({
   response: daySchema,
   problems: ['refused', 'conflict'],
 });
-
-export const getDayClosePdf = defineContract({
-  id: 'getDayClosePdf',
-  summary: 'The report of a closed day as PDF',
-  method: 'get',
-  path: '/api/day-closes/:dayCloseId/pdf',
-  access: staff('front_desk', 'manager', 'auditor'),
-  params: z.object({ dayCloseId: idField }),
-  response: z.unknown(),
-  produces: 'application/pdf',
-});

@@ -6,6 +6,7 @@ import * as closing from './closing.ts';
 import * as courses from './courses.ts';
 import type { Contract } from './define.ts';
 import * as delivery from './delivery.ts';
+import * as documents from './documents.ts';
 import * as fees from './fees.ts';
 import * as ledger from './ledger.ts';
 import * as operations from './operations.ts';
@@ -39,6 +40,7 @@ const FILES: readonly Readonly<Record<string, unknown>>[] = [
   closing,
   bank,
   ledger,
+  documents,
   today,
   proof,
   portal,

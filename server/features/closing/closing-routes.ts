@@ -1,12 +1,11 @@
-import { closeDay, countDay, enterTerminalBatch, getDay, getDayClosePdf } from '#contract/closing';
-import { type DocumentMakers, documentFor } from '#server/features/documents/index';
+import { closeDay, countDay, enterTerminalBatch, getDay } from '#contract/closing';
 import { type BoundRoute, route } from '#server/http/route';
 import { mustWorkAt } from '#server/platform/actor';
 import type { Deps } from '#server/platform/deps';
 import { closeSiteDay, countDayComplete, enterBatch } from './close-day.ts';
 import { readDay } from './day-read.ts';
 
-export function closingRoutes(deps: Deps, makers: DocumentMakers): BoundRoute[] {
+export function closingRoutes(deps: Deps): BoundRoute[] {
   return [
     route(getDay, async ({ params, actor }) => {
       mustWorkAt(actor, params.siteId, 'site');
@@ -23,11 +22,6 @@ export function closingRoutes(deps: Deps, makers: DocumentMakers): BoundRoute[] 
     route(closeDay, async ({ params, actor }) => {
       await closeSiteDay(deps, params, actor);
       return await readDay(deps.db, params.siteId, params.day, actor.userId);
-    }),
-    route(getDayClosePdf, async ({ params, actor }) => {
-      const document = await documentFor(deps, makers, 'day_close', params.dayCloseId);
-      mustWorkAt(actor, document.siteId, 'day');
-      return { ...document, inline: true };
     }),
   ];
 }

@@ -6,4 +6,7 @@ export {
   type MadeDocument,
   type StoredDocument,
 } from './document-for.ts';
-export { documentMakers, peopleMails } from './makers.ts';
+export { documentsRoutes } from './documents-routes.ts';
+export { documentMakers } from './makers.ts';
+export { peopleMails } from './render/mails.ts';
+export { subscribeDocuments } from './subscribe.ts';
