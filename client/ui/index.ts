@@ -17,6 +17,8 @@
  * | Skeleton, EmptyState, ErrorState, StateWord, Caution | states.tsx | rows · title, action · error, retry · tone |
  * | AnnouncerProvider, useAnnounce | announcer.tsx | |
  * | useShortcut | shortcuts.tsx | key, run |
+ * | EyeColumns, EYE_NAMES | eye-columns.tsx | children(eye), headings |
+ * | PrescriptionFields, echoWords | prescription-fields.tsx | typed, onType(field, text), errors, showAll |
  * | Wordmark | wordmark.tsx | bare |
  */
 export {};
