@@ -1,13 +1,12 @@
 import { useEffect, useId } from 'react';
-import type { Derivation } from '#domain/derivation';
 import type { CurrencyCode, Minor } from '#domain/money/index';
-import { useMargin } from './margin.tsx';
+import { useMargin, type Why } from './margin.tsx';
 import { moneyText } from './money.tsx';
 
 export interface FigureProps {
   readonly amount: Minor | number;
   readonly currency: CurrencyCode | string;
-  readonly why: Derivation;
+  readonly why: Why;
   /** Stable within the page, so that the address can hold which figure is open. */
   readonly id?: string;
   readonly alone?: boolean;

@@ -1,12 +1,24 @@
 import { createContext, type ReactNode, useCallback, useContext, useEffect, useMemo, useState } from 'react';
 import { useSearchParams } from 'react-router-dom';
-import type { Derivation } from '#domain/derivation';
 import type { CurrencyCode } from '#domain/money/index';
 import { Money } from './money.tsx';
 
+/** Why a figure is what it is, as it comes over the wire or from a rule (a Derivation fits). */
+export interface Why {
+  readonly title: string;
+  readonly steps: readonly {
+    readonly label: string;
+    readonly amountMinor?: number | undefined;
+    readonly text?: string | undefined;
+    readonly rule?: string | undefined;
+    readonly version?: string | undefined;
+  }[];
+  readonly note?: string | undefined;
+}
+
 /** A figure that was asked about: its reasons in the currency of its page. */
 export interface Asked {
-  readonly why: Derivation;
+  readonly why: Why;
   readonly currency: CurrencyCode | string;
 }
 

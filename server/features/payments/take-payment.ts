@@ -1,6 +1,6 @@
 import type { ReceiptView } from '#contract/payments';
 import { type Minor, minor, subtract } from '#domain/money/index';
-import { type PaymentTaken, type Tender, takePayment } from '#domain/payments/index';
+import { cashStepOf, type PaymentTaken, type Tender, takePayment } from '#domain/payments/index';
 import { todayAt } from '#server/features/business-days/index';
 import { coursePaid, lockCourse } from '#server/features/courses/index';
 import { mustWorkAt, type StaffActor } from '#server/platform/actor';
@@ -43,7 +43,7 @@ export async function takeDeskPayment(deps: Deps, payment: DeskPayment): Promise
     const taken = takePayment({
       tenders: payment.tenders,
       leftMinor: subtract(course.totalMinor, paid.appliedMinor),
-      cashStepMinor: 1,
+      cashStepMinor: cashStepOf(course.currency),
     });
     if (!taken.ok) throw refusedTenders(taken);
     const till = await tillForCash(trx, payment, course.siteId);
