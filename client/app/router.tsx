@@ -53,6 +53,14 @@ export const router = createBrowserRouter([
             children: [
               { index: true, lazy: page(() => import('#client/features/today/today-page.tsx'), 'TodayPage') },
               {
+                path: '/patients',
+                lazy: page(() => import('#client/features/patients/patients-page.tsx'), 'PatientsPage'),
+              },
+              {
+                path: '/patients/:patientId',
+                lazy: page(() => import('#client/features/patients/patient-page.tsx'), 'PatientPage'),
+              },
+              {
                 path: '/courses/:courseId',
                 lazy: page(() => import('#client/features/courses/course-page.tsx'), 'CoursePage'),
               },
