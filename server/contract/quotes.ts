@@ -60,6 +60,8 @@ export const optionPriceSchema = z
       totalMinor: amountField,
       contentHash: z.string(),
       standing: z.enum(['quotable', 'estimate']),
+      /** Version of the price book it was priced from. */
+      bookVersion: z.int(),
     }),
     z.object({ ok: z.literal(false), refusals: z.array(refusalSchema) }),
   ])

@@ -2,7 +2,7 @@ import { useQueryClient } from '@tanstack/react-query';
 import { useCallback, useEffect, useMemo, useRef, useState } from 'react';
 import { call } from '#client/api/call.ts';
 import { ProblemError } from '#client/api/problem-error.ts';
-import { type OptionPrice, type QuoteView, saveDraft } from '#contract/quotes';
+import { type QuoteView, saveDraft } from '#contract/quotes';
 import type { QuoteDraft } from '#domain/quotes/index';
 import type { Instant } from '#domain/time/index';
 import { type Autosave, createAutosave, type SaveState } from './autosave.ts';
@@ -14,17 +14,19 @@ type WireDraft = NonNullable<QuoteView['draft']>;
 
 export interface DraftDesk {
   readonly draft: QuoteDraft;
+  /** Version of the draft as it was saved last. */
+  readonly version: number;
   readonly state: SaveState;
   readonly savedAt: Instant;
   /** Why the last save failed. */
   readonly problem: ProblemError | undefined;
-  /** What the server made of the draft when it was last saved. */
-  readonly prices: readonly OptionPrice[];
   change(next: QuoteDraft): void;
   /** Saves what is not saved yet; the version to go on from, or undefined when it could not be saved. */
-  flush(): Promise<{ draftVersion: number; prices: readonly OptionPrice[] } | undefined>;
+  flush(): Promise<number | undefined>;
   /** After a conflict: the newer draft from the server, in place of one's own. */
   takeTheirs(): Promise<void>;
+  /** After a conflict: one's own draft over the newer one, because a person said so. */
+  keepMine(): Promise<void>;
 }
 
 /** A draft being written: on the screen at once, on the server a moment later. */
@@ -35,9 +37,12 @@ export function useDraft(quote: QuoteView, initial: QuoteDraft): DraftDesk {
   const [savedAt, setSavedAt] = useState<Instant>(quote.changedAt);
   const [problem, setProblem] = useState<ProblemError>();
   const [generation, setGeneration] = useState(0);
-  const prices = useRef<readonly OptionPrice[]>(quote.prices);
   const version = useRef(quote.draftVersion);
+  const [shownVersion, setShownVersion] = useState(quote.draftVersion);
   const autosave = useRef<Autosave<QuoteDraft>>(undefined);
+  const mine = useRef(draft);
+  mine.current = draft;
+  const overwrite = useRef(false);
   const { quoteId } = quote;
 
   // biome-ignore lint/correctness/useExhaustiveDependencies: a new generation begins anew on the version just read
@@ -48,9 +53,22 @@ export function useDraft(quote: QuoteView, initial: QuoteDraft): DraftDesk {
       save: async (next, from) => {
         const body = { draft: next as WireDraft, draftVersion: from };
         const saved = await call(saveDraft, { params: { quoteId }, body });
-        prices.current = saved.prices;
         version.current = saved.draftVersion;
+        setShownVersion(saved.draftVersion);
         setSavedAt(saved.savedAt);
+        // What other pages read of this quote is the draft just saved, not the one first fetched.
+        client.setQueryData(quoteQuery(quoteId).queryKey, (before) =>
+          before
+            ? {
+                ...before,
+                draft: body.draft,
+                draftVersion: saved.draftVersion,
+                changedAt: saved.savedAt,
+                prices: saved.prices,
+                draftDiffers: true,
+              }
+            : before,
+        );
         return { version: saved.draftVersion };
       },
       isConflict: (error) => error instanceof ProblemError && error.code === 'conflict',
@@ -60,36 +78,47 @@ export function useDraft(quote: QuoteView, initial: QuoteDraft): DraftDesk {
       },
     });
     autosave.current = saving;
+    if (overwrite.current) {
+      overwrite.current = false;
+      saving.change(mine.current);
+    }
     return () => {
       void saving.flush().finally(() => saving.stop());
     };
-  }, [quoteId, generation]);
+  }, [client, quoteId, generation]);
 
   const change = useCallback((next: QuoteDraft) => {
     setDraft(next);
     autosave.current?.change(next);
   }, []);
 
-  const flush = useCallback(async () => {
-    const draftVersion = await autosave.current?.flush();
-    return draftVersion === undefined ? undefined : { draftVersion, prices: prices.current };
-  }, []);
+  const flush = useCallback(async () => await autosave.current?.flush(), []);
 
-  const takeTheirs = useCallback(async () => {
+  const beginAnew = useCallback(async () => {
     const newer = await client.fetchQuery({ ...quoteQuery(quoteId), staleTime: 0 });
     version.current = newer.draftVersion;
-    prices.current = newer.prices;
+    setShownVersion(newer.draftVersion);
     setSavedAt(newer.changedAt);
-    setState('saved');
     setProblem(undefined);
-    if (newer.draft) setDraft(newer.draft);
     setGeneration((before) => before + 1);
+    return newer;
   }, [client, quoteId]);
+
+  const takeTheirs = useCallback(async () => {
+    const newer = await beginAnew();
+    if (newer.draft) setDraft(newer.draft);
+    setState('saved');
+  }, [beginAnew]);
+
+  const keepMine = useCallback(async () => {
+    overwrite.current = true;
+    await beginAnew();
+  }, [beginAnew]);
 
   useWarnBeforeLeaving(state !== 'saved');
   return useMemo(
-    () => ({ draft, state, savedAt, problem, prices: prices.current, change, flush, takeTheirs }),
-    [draft, state, savedAt, problem, change, flush, takeTheirs],
+    () => ({ draft, version: shownVersion, state, savedAt, problem, change, flush, takeTheirs, keepMine }),
+    [draft, shownVersion, state, savedAt, problem, change, flush, takeTheirs, keepMine],
   );
 }
 

@@ -88,6 +88,7 @@ function optionPrice(option: PricedOption): OptionPrice {
         totalMinor: option.priced.totalMinor,
         contentHash: option.contentHash,
         standing: option.priced.standing,
+        bookVersion: option.priced.book.version,
       }
     : { ok: false, refusals: [...option.refusals] };
 }
