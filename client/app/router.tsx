@@ -61,6 +61,22 @@ export const router = createBrowserRouter([
                 lazy: page(() => import('#client/features/patients/patient-page.tsx'), 'PatientPage'),
               },
               {
+                path: '/quotes',
+                lazy: page(() => import('#client/features/quotes/quotes-page.tsx'), 'QuotesPage'),
+              },
+              {
+                path: '/quotes/:quoteId',
+                lazy: page(() => import('#client/features/quotes/quote-page.tsx'), 'QuotePage'),
+              },
+              {
+                path: '/quotes/:quoteId/preview',
+                lazy: page(() => import('#client/features/quotes/preview-page.tsx'), 'PreviewPage'),
+              },
+              {
+                path: '/price-book',
+                lazy: page(() => import('#client/features/price-book/price-book-page.tsx'), 'PriceBookPage'),
+              },
+              {
                 path: '/courses/:courseId',
                 lazy: page(() => import('#client/features/courses/course-page.tsx'), 'CoursePage'),
               },
