@@ -10,7 +10,8 @@ export default defineConfig({
   root: fileURLToPath(new URL('./client', import.meta.url)),
   plugins: [react(), tailwindcss()],
   resolve: { conditions: ['tl-source', 'module', 'browser', 'development|production'] },
-  server: { proxy: { '/api': API, '/webhooks': API } },
+  // The folder client/api has the same first name as the interface; its modules are the client's own.
+  server: { proxy: { '^/api/(?![\\w-]+\\.ts)': API, '/webhooks': API } },
   build: {
     outDir: fileURLToPath(new URL('./dist/client', import.meta.url)),
     emptyOutDir: true,
