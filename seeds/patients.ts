@@ -29,6 +29,8 @@ export interface DemoPatient {
   readonly priceList?: 'hospital-staff' | 'saltmarch-ferries';
   readonly package?: true;
   readonly cover?: true;
+  /** The desk keyed the balance under the wrong tender first, and voided it. */
+  readonly miskeyed?: true;
 }
 
 /** Invented people; no two share a household, a name or a story with anybody real that we know of. */
@@ -77,6 +79,7 @@ export const DEMO_PATIENTS: readonly DemoPatient[] = [
     balanceOn: -13,
     tenders: ['bank_transfer'],
     cover: true,
+    miskeyed: true,
     priceList: 'hospital-staff',
   },
   {

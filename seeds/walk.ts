@@ -7,7 +7,12 @@ import { bookInForce } from '#server/features/catalogue/index';
 import { courseMoney } from '#server/features/courses/index';
 import { recordEyeDone, recordFollowUpVisit } from '#server/features/delivery/index';
 import { approvePlan, createPatient, recordPrescription } from '#server/features/patients/index';
-import { reconcileCheckout, startCheckout, takeDeskPayment } from '#server/features/payments/index';
+import {
+  reconcileCheckout,
+  startCheckout,
+  takeDeskPayment,
+  voidDeskReceipt,
+} from '#server/features/payments/index';
 import {
   acceptQuote,
   createQuote,
@@ -180,13 +185,19 @@ export async function acceptAndPayDeposit(deps: AppDeps, walker: Walker, pay: Pa
 export async function payBalance(deps: AppDeps, clinic: DemoClinic, walker: Walker): Promise<void> {
   const { leftMinor } = await courseMoney(deps.db, deps, courseIdOf(walker));
   if (leftMinor <= 0) return;
-  await takeDeskPayment(deps, {
-    courseId: courseIdOf(walker),
-    attemptKey: randomUUID(),
-    payerName: walker.patient.name.join(' '),
-    tenders: tendersFor(leftMinor, walker.patient.tenders, walker.quoteId),
-    actor: clinic.people.desk,
-  });
+  const take = async (names: DeskTenders) =>
+    await takeDeskPayment(deps, {
+      courseId: courseIdOf(walker),
+      attemptKey: randomUUID(),
+      payerName: walker.patient.name.join(' '),
+      tenders: tendersFor(leftMinor, names, walker.quoteId),
+      actor: clinic.people.desk,
+    });
+  if (walker.patient.miskeyed) {
+    const { receiptId } = await take(['card_machine']);
+    await voidDeskReceipt(deps, receiptId, 'keyed as card, it was a bank transfer', clinic.people.desk);
+  }
+  await take(walker.patient.tenders);
 }
 
 const REFERENCE: Readonly<Record<DeskTenders[number], string | null>> = {

@@ -7,10 +7,13 @@ export const EYE_NAMES: Readonly<Record<Eye, string>> = { OD: 'Right eye', OS: '
 export function EyeColumns({
   children,
   headings = true,
+  done = [],
 }: {
   readonly children: (eye: Eye) => ReactNode;
   /** Without headings where the columns go on from ones above that have them. */
   readonly headings?: boolean;
+  /** Eyes whose surgery is done: their disc is filled. */
+  readonly done?: readonly Eye[];
 }) {
   return (
     <div className={`grid md:grid-cols-2 ${headings ? 'border-t-2 border-ink' : ''}`}>
@@ -23,7 +26,14 @@ export function EyeColumns({
           {headings ? (
             <h2 className="mb-3 flex items-center gap-3">
               <svg aria-hidden="true" width="16" height="16" viewBox="0 0 16 16" className="shrink-0">
-                <circle cx="8" cy="8" r="6.5" fill="none" stroke="currentColor" strokeWidth="2" />
+                <circle
+                  cx="8"
+                  cy="8"
+                  r="6.5"
+                  fill={done.includes(eye) ? 'currentColor' : 'none'}
+                  stroke="currentColor"
+                  strokeWidth="2"
+                />
               </svg>
               {EYE_NAMES[eye]} <span className="text-small font-normal text-soft">{eye}</span>
             </h2>

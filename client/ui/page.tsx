@@ -25,13 +25,13 @@ export function Page({ title, lead, over, actions, shortcuts = [], children }: P
           tabIndex={-1}
           className="min-w-0 max-w-[72rem] grow bg-sheet px-4 py-6 outline-none sm:px-10 sm:py-8"
         >
-          <header className="mb-6 flex flex-wrap items-end justify-between gap-4">
+          <header className="mb-6 flex flex-wrap items-end justify-between gap-4 xl:flex-nowrap">
             <div className="min-w-0">
               {over ? <p className="text-soft">{over}</p> : null}
               <h1>{title}</h1>
               {lead ? <p className="mt-1 text-soft">{lead}</p> : null}
             </div>
-            {actions ? <div className="flex flex-wrap items-center gap-3">{actions}</div> : null}
+            {actions ? <div className="flex flex-wrap items-center gap-3 xl:shrink-0">{actions}</div> : null}
           </header>
           {children}
         </main>

@@ -22,27 +22,32 @@ export function pairWords(eyes: readonly PairEye[]): string {
   return words.length === 0 ? 'no eye' : words.join(', ');
 }
 
-/** Two discs on two short rules, right eye on the reader's left. The disc tells the eye, the rule the money. */
+/** Two discs on two short rules, right eye on the reader's left. The disc tells the eye, the rule the money. `only` draws one eye alone. */
 export function PairMark({
   eyes,
   size = 'small',
+  only,
 }: {
   readonly eyes: readonly PairEye[];
   readonly size?: 'small' | 'large';
+  readonly only?: Eye;
 }) {
   const scale = size === 'large' ? 1.7 : 1;
+  const shown = (['OD', 'OS'] as const).filter((eye) => only === undefined || eye === only);
+  const width = 18 * shown.length - 2;
   return (
     <svg
       role="img"
       aria-label={pairWords(eyes)}
-      width={34 * scale}
+      width={width * scale}
       height={20 * scale}
-      viewBox="0 0 34 20"
+      viewBox={`0 0 ${width} 20`}
       className="inline-block shrink-0 text-ink"
     >
       <title>{pairWords(eyes)}</title>
-      <EyeDisc found={eyes.find((each) => each.eye === 'OD')} x={8} />
-      <EyeDisc found={eyes.find((each) => each.eye === 'OS')} x={26} />
+      {shown.map((eye, index) => (
+        <EyeDisc key={eye} found={eyes.find((each) => each.eye === eye)} x={8 + index * 18} />
+      ))}
     </svg>
   );
 }

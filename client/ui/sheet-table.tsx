@@ -32,7 +32,7 @@ export function SheetTable<Row>({
   showCaption = false,
 }: SheetTableProps<Row>) {
   return (
-    <div className="overflow-x-auto">
+    <div className="relative overflow-x-auto">
       <table className="w-full border-collapse text-body">
         <caption className={showCaption ? 'pb-2 text-left text-lead font-extrabold' : 'sr-only'}>
           {caption}

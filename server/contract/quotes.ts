@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import type { QuoteDraft } from '#domain/quotes/index';
+import { pairEyeSchema } from './courses.ts';
 import { defineContract, staff } from './define.ts';
 import {
   amountField,
@@ -174,8 +175,8 @@ export const quoteSummarySchema = z
     validUntil: dayField.nullable(),
     currency: currencyField.nullable(),
     totalsMinor: z.array(amountField),
-    /** Eyes of the first option, issued or drafted. */
-    eyes: z.object({ OD: z.boolean(), OS: z.boolean() }),
+    /** Eyes of the course it became, else those of the first option, issued or drafted. */
+    eyes: z.array(pairEyeSchema),
     openedAt: instantField.nullable(),
   })
   .meta({ id: 'QuoteSummary' });

@@ -31,6 +31,7 @@ export function problemHandler(log: Logger): ErrorRequestHandler {
 function asProblem(error: unknown): Problem {
   if (error instanceof Problem) return error;
   const code = bodyParserCode(error);
+  if (code === 'not_found') return new Problem(code, { detail: 'There is no such file.' });
   if (code)
     return new Problem(code, {
       detail:
@@ -44,6 +45,7 @@ function asProblem(error: unknown): Problem {
 /** body-parser and Express raise http-errors with a 4xx status of their own. */
 function bodyParserCode(error: unknown): ProblemCode | undefined {
   if (typeof error !== 'object' || error === null || !('status' in error)) return undefined;
+  if (error.status === 404) return 'not_found';
   if (error.status === 413) return 'too_large';
   if (error.status === 415) return 'unsupported';
   return typeof error.status === 'number' && error.status >= 400 && error.status < 500

@@ -15,7 +15,7 @@ import { openDatabase } from '#server/platform/db';
 import { createFacts } from '#server/platform/facts';
 import { createLog } from '#server/platform/log';
 import { Agent } from './agent.ts';
-import { testDatabase } from './test-database.ts';
+import { type TestDatabase, testDatabase } from './test-database.ts';
 
 export const TEST_PASSWORD = 'a long test password';
 
@@ -38,13 +38,15 @@ export interface TestAppOptions {
   readonly smtpUrl?: string;
   readonly limits?: SignInLimits;
   readonly clientFolder?: string;
+  /** Another database than the worker's. */
+  readonly database?: TestDatabase;
   /** Port 0 picks a free one. */
   readonly port?: number;
 }
 
 /** The whole application on the worker's database, listening on a free port. Workers run only when a test calls settle(). */
 export async function testApp(options: TestAppOptions = {}): Promise<TestApp> {
-  const { appUrl } = await testDatabase();
+  const { appUrl } = options.database ?? (await testDatabase());
   const stripe = new URL(options.stripeUrl ?? 'http://127.0.0.1:9');
   const config = readConfig({
     NODE_ENV: 'test',

@@ -98,7 +98,7 @@ function Eyes({ course, roles }: { readonly course: CourseView; readonly roles: 
             className={`py-4 ${index === 1 ? 'sm:border-l sm:border-ink sm:pl-6' : 'sm:pr-6'}`}
           >
             <h2 className="flex items-center gap-3">
-              {eye ? <PairMark eyes={[eye]} /> : null}
+              {eye ? <PairMark eyes={[eye]} only={side} /> : null}
               {side === 'OD' ? 'Right eye' : 'Left eye'}{' '}
               <span className="text-small font-normal text-soft">{side}</span>
             </h2>
@@ -260,7 +260,7 @@ function MoneyOf({ course }: { readonly course: CourseView }) {
           </tr>
         }
       />
-      <dl className="mt-4 grid gap-2 text-small sm:grid-cols-2">
+      <dl className="mt-4 grid gap-x-12 gap-y-2 text-small sm:grid-cols-2">
         <div className="flex justify-between gap-4">
           <dt className="text-soft">Due today</dt>
           <dd>

@@ -18,9 +18,12 @@ export function EyesSection({
   readonly onRefraction: (() => void) | undefined;
   readonly onPlan: (() => void) | undefined;
 }) {
+  const done = patient.courses.flatMap((course) =>
+    course.eyes.filter((each) => each.state === 'done').map((each) => each.eye),
+  );
   return (
     <section aria-label="Eyes">
-      <EyeColumns>{(eye) => <OneEye patient={patient} eye={eye} />}</EyeColumns>
+      <EyeColumns done={done}>{(eye) => <OneEye patient={patient} eye={eye} />}</EyeColumns>
       <div className="flex flex-wrap items-center justify-between gap-3 border-y border-rule py-3">
         <PlanWords patient={patient} />
         <div className="flex flex-wrap gap-3">

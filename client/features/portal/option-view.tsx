@@ -33,7 +33,9 @@ export function OptionView({ option, currency }: { readonly option: Option; read
               className={`py-4 ${index === 1 ? 'border-l border-ink pl-4' : 'pr-4'}`}
             >
               <h2 className="flex items-center gap-2">
-                {eye ? <PairMark eyes={[{ eye: side, state: 'planned', money: 'none' }]} /> : null}
+                {eye ? (
+                  <PairMark eyes={[{ eye: side, state: 'planned', money: 'none' }]} only={side} />
+                ) : null}
                 {side === 'OD' ? 'Right' : 'Left'}
               </h2>
               {eye ? (

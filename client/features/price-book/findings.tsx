@@ -20,7 +20,10 @@ export function Findings({
       </summary>
       <ul className="mt-2">
         {findings.map((finding) => (
-          <li key={`${finding.code}-${finding.field}`} className="border-b border-rule py-1.5 text-small">
+          <li
+            key={`${finding.code}-${finding.field}-${finding.words}`}
+            className="border-b border-rule py-1.5 text-small"
+          >
             <StateWord tone={finding.severity === 'error' ? 'wrong' : 'waiting'}>
               {finding.severity === 'error' ? 'error' : 'notice'}
             </StateWord>{' '}

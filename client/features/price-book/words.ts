@@ -4,7 +4,6 @@ import {
   type Band,
   type Charge,
   type Discount,
-  daysBeforeWords,
   type EnhancementCover,
   formatRate,
   type PaymentPlan,
@@ -104,7 +103,9 @@ export function planWords(plan: PaymentPlan): string {
 
 export function rungWords(minDaysBefore: number): string {
   if (minDaysBefore === 0) return 'on the day of surgery';
-  return `${daysBeforeWords(minDaysBefore).replace(' before surgery', '')} or more before surgery`;
+  return minDaysBefore === 1
+    ? '1 day or more before surgery'
+    : `${minDaysBefore} days or more before surgery`;
 }
 
 const SECTIONS: Readonly<Record<string, string>> = {

@@ -41,7 +41,7 @@ export function ProofPage() {
       {proof.isError ? <ErrorState error={proof.error} retry={() => void proof.refetch()} /> : null}
       {data ? (
         <>
-          <div className="hidden border-b-2 border-ink py-2 text-small font-semibold text-soft md:grid md:grid-cols-[1fr_9rem_9rem_7rem]">
+          <div className="hidden gap-x-4 border-b-2 border-ink py-2 text-small font-semibold text-soft md:grid md:grid-cols-[1fr_9rem_9rem_7rem]">
             <span>Control</span>
             <span className="text-right">One way, {data.currency}</span>
             <span className="text-right">Other way, {data.currency}</span>

@@ -2,6 +2,7 @@ import { useMemo, useState } from 'react';
 import { Link, useSearchParams } from 'react-router-dom';
 import { Button, LinkButton } from '#client/ui/button.tsx';
 import { EyeColumns } from '#client/ui/eye-columns.tsx';
+import { TextField } from '#client/ui/fields.tsx';
 import { MarginNote } from '#client/ui/margin.tsx';
 import { Page } from '#client/ui/page.tsx';
 import { PrescriptionFields } from '#client/ui/prescription-fields.tsx';
@@ -9,6 +10,7 @@ import { useSite } from '#client/ui/site.tsx';
 import type { QuoteView } from '#contract/quotes';
 import { compilePriceBook, type PriceBook, type QuoteResult } from '#domain/pricing/index';
 import {
+  MOST_OPTIONS,
   type OptionDraft,
   optionLetter,
   optionWords,
@@ -82,14 +84,7 @@ export function DraftSheet({
     >
       {desk.state === 'conflict' ? <SaveConflict desk={desk} /> : null}
       <Eyes draft={draft} result={result} desk={desk} />
-      <OptionStrip
-        options={stripOptions(draft.options, results)}
-        chosen={chosen}
-        onAdd={() => {
-          desk.change(addOption(draft, chosen));
-          choose(draft.options.length);
-        }}
-      />
+      <OptionStrip options={stripOptions(draft.options, results)} chosen={chosen} />
       {option && result ? (
         <OneOption
           quote={quote}
@@ -98,6 +93,15 @@ export function DraftSheet({
           book={book}
           letter={optionLetter(chosen)}
           onChange={(next) => desk.change(changeOption(draft, chosen, next))}
+          many={draft.options.length > 1}
+          onAdd={
+            draft.options.length < MOST_OPTIONS
+              ? () => {
+                  desk.change(addOption(draft, chosen));
+                  choose(draft.options.length);
+                }
+              : undefined
+          }
           onRemove={
             draft.options.length > 1
               ? () => {
@@ -167,7 +171,7 @@ function PatientWords({ quote }: { readonly quote: QuoteView }) {
   const { plan, patient } = quote;
   return (
     <>
-      <Link to={`/patients/${patient.patientId}`}>born {formatDay(patient.bornOn)}</Link> ·{' '}
+      born {formatDay(patient.bornOn)} ·{' '}
       {plan ? (
         plan.good ? (
           `plan approved by ${plan.surgeonName} on ${formatDay(plan.approvedOn)}, good until ${formatDay(plan.expiresOn)}`
@@ -180,7 +184,8 @@ function PatientWords({ quote }: { readonly quote: QuoteView }) {
         <span className="font-semibold text-povidone">
           no approved plan: an estimate, subject to assessment
         </span>
-      )}
+      )}{' '}
+      · <Link to={`/patients/${patient.patientId}`}>patient’s page</Link>
     </>
   );
 }
@@ -229,6 +234,8 @@ function OneOption({
   book,
   letter,
   onChange,
+  many,
+  onAdd,
   onRemove,
 }: {
   readonly quote: QuoteView;
@@ -237,6 +244,8 @@ function OneOption({
   readonly book: PriceBook;
   readonly letter: string;
   readonly onChange: (next: OptionDraft) => void;
+  readonly many: boolean;
+  readonly onAdd: (() => void) | undefined;
   readonly onRemove: (() => void) | undefined;
 }) {
   const errors = fieldErrors(result.ok ? [] : result.refusals);
@@ -252,11 +261,30 @@ function OneOption({
         disabled={false}
       />
       <OptionSettings option={option} book={book} errors={errors} onChange={onChange} disabled={false} />
-      {onRemove ? (
-        <Button kind="quiet" onPress={onRemove}>
-          Take option {letter} out
-        </Button>
-      ) : null}
+      <div className="flex flex-wrap items-end justify-between gap-4">
+        {many ? (
+          <TextField
+            label={`Name of option ${letter}`}
+            value={option.label}
+            maxLength={80}
+            placeholder={optionWords({ ...option, label: '' })}
+            className="w-full max-w-xs"
+            onChange={(label) => onChange({ ...option, label })}
+          />
+        ) : null}
+        <div className="ml-auto flex flex-wrap gap-4">
+          {onAdd ? (
+            <Button kind="quiet" onPress={onAdd}>
+              Add an option beside it
+            </Button>
+          ) : null}
+          {onRemove ? (
+            <Button kind="quiet" onPress={onRemove}>
+              Take option {letter} out
+            </Button>
+          ) : null}
+        </div>
+      </div>
       {result.ok ? (
         <>
           <PricedTable course={result.course} title={`Option ${letter}, ${words}`} />

@@ -28,7 +28,7 @@ export function EyeWishes({
   return (
     <EyeColumns headings={false}>
       {(eye) => (
-        <div className="grid gap-4">
+        <div className="grid gap-4 sm:grid-cols-2">
           <ProcedureField
             eye={eye}
             option={option}

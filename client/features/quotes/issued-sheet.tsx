@@ -37,10 +37,11 @@ export function IssuedSheet({ quote, mayWrite }: { readonly quote: QuoteView; re
       }
       lead={
         <>
-          <Link to={`/patients/${quote.patient.patientId}`}>born {formatDay(quote.patient.bornOn)}</Link>
+          born {formatDay(quote.patient.bornOn)}
           {version
             ? ` · issued by ${version.issuedBy} on ${formatDay(version.issuedOn)}, price book ${version.priceBookVersion}`
-            : ''}
+            : ''}{' '}
+          · <Link to={`/patients/${quote.patient.patientId}`}>patient’s page</Link>
         </>
       }
       actions={

@@ -3,7 +3,7 @@ import { CheckField, DateField, SelectField, TextField } from '#client/ui/fields
 import { EYES, type Laterality } from '#domain/eye';
 import { formatAmount } from '#domain/money/index';
 import { type AddOn, type Discount, formatRate, type PriceBook } from '#domain/pricing/index';
-import { type OptionDraft, optionWords } from '#domain/quotes/index';
+import type { OptionDraft } from '#domain/quotes/index';
 import { isClinicDate } from '#domain/time/index';
 import { chooseDay, choosePlan, hasAddOn, sizeDiscount, toggleAddOn } from './edit-draft.ts';
 import type { FieldErrors } from './field-errors.ts';
@@ -20,13 +20,17 @@ export interface SettingsProps {
 export function OptionSettings(props: SettingsProps) {
   return (
     <div className="border-t border-rule py-4">
-      <div className="grid gap-4 sm:grid-cols-2 lg:grid-cols-3">
+      <div className="grid gap-4 sm:grid-cols-2 lg:grid-cols-5">
         <Days {...props} />
         <Choices {...props} />
       </div>
-      <div className="mt-4 grid gap-6 sm:grid-cols-2">
-        <AddOns {...props} />
-        <Discounts {...props} />
+      <div className="mt-4 grid gap-4 lg:grid-cols-5">
+        <div className="lg:col-span-3">
+          <AddOns {...props} />
+        </div>
+        <div className="lg:col-span-2">
+          <Discounts {...props} />
+        </div>
       </div>
     </div>
   );
@@ -55,7 +59,7 @@ function Days({ option, errors, onChange, disabled }: SettingsProps) {
           value={surgery.on ?? ''}
           disabled={disabled}
           error={errors.at('surgery.on', 'surgery.on.OD', 'surgery.on.OS')}
-          hint={surgery.on === null ? 'Leave empty while no day is agreed' : undefined}
+          hint={surgery.on === null ? 'Empty while none is agreed' : undefined}
           onChange={(text) => onChange(chooseDay(option, 'both', isClinicDate(text) ? text : null))}
         />
       ) : null}
@@ -106,14 +110,6 @@ function Choices({ option, book, errors, onChange, disabled }: SettingsProps) {
           ...book.paymentPlans.map((each) => ({ value: each.id, label: each.label })),
         ]}
       />
-      <TextField
-        label="Name of this option"
-        value={option.label}
-        disabled={disabled}
-        maxLength={80}
-        placeholder={optionWords({ ...option, label: '' })}
-        onChange={(label) => onChange({ ...option, label })}
-      />
     </>
   );
 }
@@ -129,26 +125,28 @@ function AddOns({ option, book, errors, onChange, disabled }: SettingsProps) {
   return (
     <fieldset>
       <legend className="mb-1 text-small font-semibold">Add-ons</legend>
-      {book.addOns.flatMap((addOn) =>
-        sides(addOn).map((side) => (
-          <CheckField
-            key={`${addOn.id}-${side}`}
-            disabled={disabled}
-            checked={hasAddOn(option, addOn.id, side)}
-            error={errorOf(addOn, side)}
-            onChange={(wanted) => onChange(toggleAddOn(option, addOn.id, side, wanted))}
-            label={
-              <>
-                {addOn.label}
-                {side === 'OU' ? '' : `, ${side}`}{' '}
-                <span className="tabular text-small text-soft">
-                  {formatAmount(addOn.priceMinor, book.currency)}
-                </span>
-              </>
-            }
-          />
-        )),
-      )}
+      <div className="flex flex-wrap gap-x-6">
+        {book.addOns.flatMap((addOn) =>
+          sides(addOn).map((side) => (
+            <CheckField
+              key={`${addOn.id}-${side}`}
+              disabled={disabled}
+              checked={hasAddOn(option, addOn.id, side)}
+              error={errorOf(addOn, side)}
+              onChange={(wanted) => onChange(toggleAddOn(option, addOn.id, side, wanted))}
+              label={
+                <>
+                  {addOn.label}
+                  {side === 'OU' ? '' : `, ${side}`}{' '}
+                  <span className="tabular text-small text-soft">
+                    {formatAmount(addOn.priceMinor, book.currency)}
+                  </span>
+                </>
+              }
+            />
+          )),
+        )}
+      </div>
     </fieldset>
   );
 }
@@ -157,7 +155,7 @@ function Discounts({ option, book, errors, onChange, disabled }: SettingsProps) 
   const free = book.discounts.filter((rule) => !option.discounts.some((each) => each.discountId === rule.id));
   return (
     <fieldset>
-      <legend className="mb-1 text-small font-semibold">Discounts, each with its reason</legend>
+      <legend className="mb-1 text-small font-semibold">Discounts</legend>
       {option.discounts.map((discount, index) => {
         const rule = book.discounts.find((each) => each.id === discount.discountId);
         return (

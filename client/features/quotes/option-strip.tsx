@@ -1,8 +1,7 @@
 import { Link, useSearchParams } from 'react-router-dom';
-import { Button } from '#client/ui/button.tsx';
 import { moneyText } from '#client/ui/money.tsx';
 import type { QuoteResult } from '#domain/pricing/index';
-import { MOST_OPTIONS, type OptionDraft, optionLetter, optionWords } from '#domain/quotes/index';
+import { type OptionDraft, optionLetter, optionWords } from '#domain/quotes/index';
 
 /** Which option the address asks for, from 0. */
 export function useChosenOption(count: number): number {
@@ -31,15 +30,13 @@ export function stripOptions(
   });
 }
 
-/** The options side by side, each with what it comes to; the one being looked at is the current tab. */
+/** The options side by side, each with what it comes to; the one being looked at is the current tab. One alone has no strip. */
 export function OptionStrip({
   options,
   chosen,
-  onAdd,
 }: {
   readonly options: readonly StripOption[];
   readonly chosen: number;
-  readonly onAdd?: (() => void) | undefined;
 }) {
   const [search] = useSearchParams();
   const to = (index: number): string => {
@@ -48,7 +45,7 @@ export function OptionStrip({
     next.delete('why');
     return `?${next.toString()}`;
   };
-  if (options.length < 2 && !onAdd) return null;
+  if (options.length < 2) return null;
   return (
     <nav aria-label="Options" className="mt-4 flex flex-wrap items-stretch border-b border-ink">
       {options.map((option, index) => (
@@ -65,11 +62,6 @@ export function OptionStrip({
           <span className="tabular font-extrabold">{option.total ?? 'not priced yet'}</span>
         </Link>
       ))}
-      {onAdd && options.length < MOST_OPTIONS ? (
-        <Button kind="quiet" onPress={onAdd} className="ml-auto self-center">
-          Add an option beside it
-        </Button>
-      ) : null}
     </nav>
   );
 }

@@ -17,6 +17,31 @@ export function PricedTable({ course, title }: { readonly course: PricedCourse; 
   const columns = (['OD', 'OS', 'OU'] as const).filter((column) =>
     course.lines.some((line) => line.laterality === column),
   );
+  const rows: Row[] = tableRows(course.lines);
+  if (columns.length > 1) rows.push('together');
+  return (
+    <div className="mt-6">
+      <div className="max-md:hidden">
+        <WideTable course={course} title={title} columns={columns} rows={rows} />
+      </div>
+      <div className="md:hidden">
+        <NarrowTable course={course} title={title} columns={columns} rows={rows} />
+      </div>
+    </div>
+  );
+}
+
+interface TableProps {
+  readonly course: PricedCourse;
+  readonly title: string;
+  readonly columns: readonly Laterality[];
+  readonly rows: readonly Row[];
+}
+
+const rowKey = (row: Row): string => (row === 'together' ? row : row.row);
+
+/** A column for each eye and one for both. */
+function WideTable({ course, title, columns, rows }: TableProps) {
   const sign = currencySign(course.currency);
   const money = columns.map(
     (column): SheetColumn<Row> => ({
@@ -30,19 +55,51 @@ export function PricedTable({ course, title }: { readonly course: PricedCourse; 
     <SheetTable<Row>
       caption={title}
       columns={[{ id: 'row', head: title, cell: (row) => <RowName row={row} /> }, ...money]}
-      rows={[...tableRows(course.lines), 'together']}
-      rowKey={(row) => (row === 'together' ? row : row.row)}
-      total={
-        <tr>
-          <th scope="row" colSpan={columns.length} className="py-3 text-left font-extrabold">
-            {toPayWords(course)}
-          </th>
-          <td className="py-3 text-right">
-            <Figure id="total" amount={course.totalMinor} currency={course.currency} why={totalWhy(course)} />
-          </td>
-        </tr>
-      }
+      rows={rows}
+      rowKey={rowKey}
+      total={<TotalRow course={course} before={columns.length} />}
     />
+  );
+}
+
+/** On a phone the columns stand under one another, each figure with its eye. */
+function NarrowTable({ course, title, columns, rows }: TableProps) {
+  const amounts = (row: Row) => (
+    <ul>
+      {columns
+        .filter((column) => row === 'together' || row.cells[column])
+        .map((column) => (
+          <li key={column}>
+            <span className="mr-2 text-small text-soft">{HEADS[column]}</span>
+            <Cell row={row} column={column} course={course} />
+          </li>
+        ))}
+    </ul>
+  );
+  return (
+    <SheetTable<Row>
+      caption={title}
+      columns={[
+        { id: 'row', head: title, cell: (row) => <RowName row={row} /> },
+        { id: 'amount', head: currencySign(course.currency), align: 'right', cell: amounts },
+      ]}
+      rows={rows}
+      rowKey={rowKey}
+      total={<TotalRow course={course} before={1} />}
+    />
+  );
+}
+
+function TotalRow({ course, before }: { readonly course: PricedCourse; readonly before: number }) {
+  return (
+    <tr>
+      <th scope="row" colSpan={before} className="py-3 text-left font-extrabold">
+        {toPayWords(course)}
+      </th>
+      <td className="py-3 text-right">
+        <Figure id="total" amount={course.totalMinor} currency={course.currency} why={totalWhy(course)} />
+      </td>
+    </tr>
   );
 }
 

@@ -10,7 +10,7 @@ import { type SheetColumn, SheetTable } from '#client/ui/sheet-table.tsx';
 import { useSite } from '#client/ui/site.tsx';
 import { EmptyState, ErrorState, Skeleton, StateWord } from '#client/ui/states.tsx';
 import type { QuoteSummary } from '#contract/quotes';
-import { EYES } from '#domain/eye';
+import { currencySign } from '#domain/money/index';
 import { optionLetter, type QuoteState } from '#domain/quotes/index';
 import { type ClinicDate, dayOf, formatDay, formatDayShort } from '#domain/time/index';
 import { type QuoteFilter, quotesQuery } from './queries.ts';
@@ -133,23 +133,25 @@ function Found({
   }
   return (
     <>
-      <SheetTable caption="Quotes" columns={columnsOf(today)} rows={quotes} rowKey={(row) => row.quoteId} />
+      <SheetTable
+        caption="Quotes"
+        columns={columnsOf(today, quotes)}
+        rows={quotes}
+        rowKey={(row) => row.quoteId}
+      />
       {more ? <p className="mt-3 text-soft">There are older ones. Narrow the filters to see them.</p> : null}
     </>
   );
 }
 
-function columnsOf(today: ClinicDate): readonly SheetColumn<QuoteSummary>[] {
+function columnsOf(today: ClinicDate, quotes: readonly QuoteSummary[]): readonly SheetColumn<QuoteSummary>[] {
+  const sign = quotes.find((quote) => quote.currency)?.currency;
   return [
     {
       id: 'eyes',
       head: <span className="sr-only">Eyes</span>,
       width: 'w-14',
-      cell: (row) => (
-        <PairMark
-          eyes={EYES.filter((eye) => row.eyes[eye]).map((eye) => ({ eye, state: 'planned', money: 'none' }))}
-        />
-      ),
+      cell: (row) => (row.eyes.length > 0 ? <PairMark eyes={row.eyes} /> : null),
     },
     {
       id: 'quote',
@@ -185,7 +187,12 @@ function columnsOf(today: ClinicDate): readonly SheetColumn<QuoteSummary>[] {
           </span>
         ),
     },
-    { id: 'totals', head: 'Options', align: 'right', cell: (row) => <Totals row={row} /> },
+    {
+      id: 'totals',
+      head: sign ? `Options, ${currencySign(sign)}` : 'Options',
+      align: 'right',
+      cell: (row) => <Totals row={row} />,
+    },
   ];
 }
 

@@ -185,7 +185,7 @@ function People({ mayChange, sites }: { readonly mayChange: boolean; readonly si
               align: 'right',
               cell: (user) =>
                 mayChange && user.state !== 'left' && user.userId !== me ? (
-                  <span className="flex justify-end gap-3">
+                  <span className="flex flex-wrap justify-end gap-x-3">
                     <Button kind="quiet" aria-label={`Change ${user.name}`} onPress={() => setEditing(user)}>
                       Change
                     </Button>

@@ -1,4 +1,5 @@
 export { approvePlan } from './approve-plan.ts';
+export { courseMarks } from './course-marks.ts';
 export {
   latestPrescriptions,
   lockPatient,

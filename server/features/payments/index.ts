@@ -19,3 +19,4 @@ export { type ReceiptInput, type RecordedReceipt, recordReceipt } from './record
 export { startCheckout } from './start-checkout.ts';
 export { sweepCheckouts, sweepEvents } from './sweep-checkouts.ts';
 export { takeDeskPayment } from './take-payment.ts';
+export { voidDeskReceipt } from './void-receipt.ts';

@@ -1,8 +1,11 @@
+import type { CourseMark } from '#contract/patients';
 import type { QuoteSummary } from '#contract/quotes';
+import { EYES } from '#domain/eye';
 import { type CurrencyCode, minor } from '#domain/money/index';
 import { type QuoteState, stateOn } from '#domain/quotes/index';
 import type { ClinicDate, Instant } from '#domain/time/index';
 import { todayAt } from '#server/features/business-days/index';
+import { courseMarks } from '#server/features/patients/index';
 import type { StaffActor } from '#server/platform/actor';
 import { rawRows } from '#server/platform/db';
 import type { Deps } from '#server/platform/deps';
@@ -37,6 +40,7 @@ interface ListRow {
   totals: string | null;
   od: string | null;
   os: string | null;
+  course_id: number | null;
   opened_at: Instant | null;
 }
 
@@ -48,6 +52,7 @@ const SELECT = `SELECT q.quote_id, q.number, q.site_id, q.state, q.patient_id, p
        JSON_VALUE(v.content, '$.options[0].input.eyes.OD.procedureId')) AS od,
     IF(v.content IS NULL, JSON_VALUE(q.draft, '$.options[0].procedures.OS'),
        JSON_VALUE(v.content, '$.options[0].input.eyes.OS.procedureId')) AS os,
+    (SELECT c.course_id FROM courses c WHERE c.quote_id = q.quote_id) AS course_id,
     (SELECT MAX(l.last_opened_at) FROM quote_links l WHERE l.quote_id = q.quote_id) AS opened_at
   FROM quotes q
   JOIN patients p ON p.patient_id = q.patient_id
@@ -71,8 +76,13 @@ export async function readQuotes(
     `${SELECT} WHERE ${where} ORDER BY q.changed_at DESC, q.quote_id DESC LIMIT ${LISTED + 1}`,
     bindings,
   );
+  const listed = rows.slice(0, LISTED);
+  const marks = await courseMarks(
+    deps.db,
+    listed.filter((row) => row.course_id !== null).map((row) => row.patient_id),
+  );
   return {
-    quotes: rows.slice(0, LISTED).map((row) => summary(row, todays)),
+    quotes: listed.map((row) => summary(row, todays, marks.get(row.patient_id) ?? [])),
     more: rows.length > LISTED,
     counsellors: await counsellorsOf(deps, siteIds),
   };
@@ -105,7 +115,11 @@ function conditions(
   return { where: where.join(' AND '), bindings };
 }
 
-function summary(row: ListRow, todays: ReadonlyMap<number, ClinicDate>): QuoteSummary {
+function summary(
+  row: ListRow,
+  todays: ReadonlyMap<number, ClinicDate>,
+  marks: readonly CourseMark[],
+): QuoteSummary {
   const today = todays.get(row.site_id);
   return {
     quoteId: row.quote_id,
@@ -121,9 +135,17 @@ function summary(row: ListRow, todays: ReadonlyMap<number, ClinicDate>): QuoteSu
     validUntil: row.valid_until,
     currency: row.currency,
     totalsMinor: row.totals === null ? [] : (JSON.parse(row.totals) as number[]).map(minor),
-    eyes: { OD: row.od !== null, OS: row.os !== null },
+    eyes: marks.find((mark) => mark.courseId === row.course_id)?.eyes ?? quotedEyes(row),
     openedAt: row.opened_at,
   };
+}
+
+function quotedEyes(row: ListRow): QuoteSummary['eyes'] {
+  return EYES.filter((eye) => (eye === 'OD' ? row.od : row.os) !== null).map((eye) => ({
+    eye,
+    state: 'planned',
+    money: 'none',
+  }));
 }
 
 async function counsellorsOf(
