@@ -10,9 +10,11 @@ export function openApiDocument(
   publicUrl: string,
 ): Json & { openapi: string } {
   const paths: Record<string, Json> = {};
+  const components: Components = {};
+  components.Problem = jsonSchema(problemSchema, components);
   for (const contract of contracts) {
     const path = contract.path.replace(/:(\w+)/g, '{$1}');
-    paths[path] = { ...paths[path], [contract.method]: operationOf(contract) };
+    paths[path] = { ...paths[path], [contract.method]: operationOf(contract, components) };
   }
   return {
     openapi: '3.1.0',
@@ -25,7 +27,7 @@ export function openApiDocument(
     servers: [{ url: publicUrl }],
     paths,
     components: {
-      schemas: { Problem: jsonSchema(problemSchema) },
+      schemas: components,
       securitySchemes: {
         session: { type: 'apiKey', in: 'cookie', name: 'tl.sid' },
         csrf: { type: 'apiKey', in: 'header', name: 'X-CSRF-Token' },
@@ -35,15 +37,18 @@ export function openApiDocument(
   };
 }
 
-function operationOf(contract: Contract): Json {
+function operationOf(contract: Contract, components: Components): Json {
   return {
     operationId: contract.id,
     summary: contract.summary,
     ...(contract.access.kind === 'staff' ? { 'x-roles': contract.access.roles } : {}),
     security: securityOf(contract),
-    parameters: [...parametersOf(contract.params, 'path'), ...parametersOf(contract.query, 'query')],
-    ...bodyOf(contract),
-    responses: responsesOf(contract),
+    parameters: [
+      ...parametersOf(contract.params, 'path', components),
+      ...parametersOf(contract.query, 'query', components),
+    ],
+    ...bodyOf(contract, components),
+    responses: responsesOf(contract, components),
   };
 }
 
@@ -53,9 +58,13 @@ function securityOf(contract: Contract): Json[] {
   return contract.method === 'get' ? [{ session: [] }] : [{ session: [], csrf: [] }];
 }
 
-function parametersOf(schema: z.ZodObject | undefined, place: 'path' | 'query'): Json[] {
+function parametersOf(
+  schema: z.ZodObject | undefined,
+  place: 'path' | 'query',
+  components: Components,
+): Json[] {
   if (!schema) return [];
-  const object = jsonSchema(schema) as { properties?: Record<string, Json>; required?: string[] };
+  const object = jsonSchema(schema, components) as { properties?: Record<string, Json>; required?: string[] };
   return Object.entries(object.properties ?? {}).map(([name, property]) => ({
     name,
     in: place,
@@ -64,11 +73,11 @@ function parametersOf(schema: z.ZodObject | undefined, place: 'path' | 'query'):
   }));
 }
 
-function bodyOf(contract: Contract): Json {
+function bodyOf(contract: Contract, components: Components): Json {
   if (!contract.body && !contract.upload) return {};
   if (contract.upload) {
     const properties: Json = { [contract.upload]: { type: 'string', format: 'binary' } };
-    if (contract.body) properties.fields = jsonSchema(contract.body);
+    if (contract.body) properties.fields = jsonSchema(contract.body, components);
     return {
       requestBody: {
         required: true,
@@ -81,12 +90,12 @@ function bodyOf(contract: Contract): Json {
   return {
     requestBody: {
       required: true,
-      content: { 'application/json': { schema: jsonSchema(contract.body as z.ZodType) } },
+      content: { 'application/json': { schema: jsonSchema(contract.body as z.ZodType, components) } },
     },
   };
 }
 
-function responsesOf(contract: Contract): Json {
+function responsesOf(contract: Contract, components: Components): Json {
   const good =
     contract.status === 204
       ? { description: 'Done' }
@@ -96,7 +105,7 @@ function responsesOf(contract: Contract): Json {
             [contract.produces]: {
               schema:
                 contract.produces === 'application/json'
-                  ? jsonSchema(contract.response)
+                  ? jsonSchema(contract.response, components)
                   : { type: 'string', contentMediaType: contract.produces },
             },
           },
@@ -124,12 +133,19 @@ function expectedProblems(contract: Contract): ProblemCode[] {
   return codes;
 }
 
-/** The input side: what a caller writes and what goes over the wire. Shared shapes are written out where they are used. */
-function jsonSchema(schema: z.ZodType): Json {
-  const { $schema: _dialect, ...rest } = z.toJSONSchema(schema, {
-    io: 'input',
-    unrepresentable: 'any',
-    reused: 'inline',
-  }) as Json;
-  return JSON.parse(JSON.stringify(rest).replaceAll('#/$defs/', '#/components/schemas/')) as Json;
+/** Shapes with a name of their own, gathered while the document is built. */
+type Components = Record<string, Json>;
+
+/** The input side: what a caller writes and what goes over the wire. Named shapes go to the components and are referred to. */
+function jsonSchema(schema: z.ZodType, components: Components): Json {
+  const made = z.toJSONSchema(schema, { io: 'input', unrepresentable: 'any', reused: 'inline' }) as Json;
+  const moved = JSON.parse(JSON.stringify(made).replaceAll('#/$defs/', '#/components/schemas/')) as Json;
+  const { $schema: _dialect, $defs, ...rest } = moved;
+  for (const [name, definition] of Object.entries(($defs ?? {}) as Record<string, Json>))
+    components[name] = withoutId(definition);
+  return withoutId(rest);
+}
+
+function withoutId({ id: _id, $id: _uri, ...rest }: Json): Json {
+  return rest;
 }
