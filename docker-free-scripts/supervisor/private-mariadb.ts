@@ -17,7 +17,7 @@ const SOCKET_LIMIT = 100;
 
 /** Starts the private MariaDB below a folder, making it on the first start: loopback, durable, owner and application apart. */
 export async function startPrivateMariadb(folder: string, port: number): Promise<PrivateMariadb> {
-  const data = path.join(folder, 'data');
+  const data = path.resolve(folder, 'data');
   mkdirSync(folder, { recursive: true });
   const user = userInfo().username;
   if (!existsSync(path.join(data, 'mysql'))) {
