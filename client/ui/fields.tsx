@@ -9,7 +9,8 @@ import {
 } from 'react';
 import { type CurrencyCode, formatAmount, type Minor, parseMoney } from '#domain/money/index';
 
-const CONTROL = 'w-full min-h-10 rounded-sm border bg-sheet px-3 text-body text-ink placeholder:text-soft';
+const CONTROL =
+  'w-full min-h-10 rounded-sm border bg-sheet px-3 text-body text-ink placeholder:text-soft aria-invalid:border-bengal';
 
 interface FieldFrame {
   readonly label: ReactNode;

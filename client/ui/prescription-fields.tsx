@@ -1,4 +1,4 @@
-import { useState } from 'react';
+import { useId, useState } from 'react';
 import {
   formatPower,
   formatPrescription,
@@ -27,8 +27,8 @@ const FIELDS: readonly {
 }[] = [
   { field: 'sphere', label: 'Sphere', width: 'col-span-2' },
   { field: 'cylinder', label: 'Cylinder', width: 'col-span-2' },
-  { field: 'axis', label: 'Axis', width: 'col-span-2 sm:col-span-1' },
-  { field: 'vertex', label: 'Vertex', width: 'col-span-2 sm:col-span-1' },
+  { field: 'axis', label: 'Axis', width: 'col-span-2 sm:col-span-1 md:col-span-2 lg:col-span-1' },
+  { field: 'vertex', label: 'Vertex', width: 'col-span-2 sm:col-span-1 md:col-span-2 lg:col-span-1' },
 ];
 
 /**
@@ -49,16 +49,18 @@ export function PrescriptionFields({
   readonly showAll?: boolean;
   readonly disabled?: boolean;
 }) {
+  const id = useId();
   const [left, setLeft] = useState<ReadonlySet<PrescriptionField>>(new Set());
   const read = parsePrescriptionFields(typed);
-  const own = (field: PrescriptionField): string | undefined => {
-    if (read.ok || !(showAll || left.has(field))) return undefined;
-    const refusal = read.refusals.find((each) => each.field === field);
-    return refusal ? `${refusal.words} ${refusal.change}` : undefined;
+  const wordsFor = (field: PrescriptionField): string | undefined => {
+    const own = read.ok ? undefined : read.refusals.find((each) => each.field === field);
+    if (own && (showAll || left.has(field))) return `${own.words} ${own.change}`;
+    return errors[field];
   };
+  const wrong = FIELDS.filter(({ field }) => wordsFor(field) !== undefined);
   return (
     <div>
-      <div className="grid grid-cols-4 gap-3 sm:grid-cols-6">
+      <div className="grid grid-cols-4 gap-3 sm:grid-cols-6 md:grid-cols-4 lg:grid-cols-6">
         {FIELDS.map(({ field, label, width }) => (
           <TextField
             key={field}
@@ -66,15 +68,25 @@ export function PrescriptionFields({
             value={typed[field]}
             placeholder={field === 'vertex' ? '12' : ''}
             disabled={disabled}
-            inputMode="text"
             autoComplete="off"
             className={width}
-            error={own(field) ?? errors[field]}
+            aria-invalid={wordsFor(field) === undefined ? undefined : true}
+            aria-describedby={wordsFor(field) === undefined ? undefined : `${id}-${field}`}
             onChange={(text) => onType(field, text)}
             onBlur={() => setLeft((before) => new Set(before).add(field))}
           />
         ))}
       </div>
+      {wrong.map(({ field }) => (
+        <p
+          key={field}
+          id={`${id}-${field}`}
+          role="alert"
+          className="mt-1 text-small font-semibold text-bengal"
+        >
+          {wordsFor(field)}
+        </p>
+      ))}
       <p className="mt-1 min-h-5 text-small text-soft" aria-live="polite">
         {echoWords(typed)}
       </p>

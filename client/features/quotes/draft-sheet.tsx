@@ -84,7 +84,7 @@ export function DraftSheet({
     >
       {desk.state === 'conflict' ? <SaveConflict desk={desk} /> : null}
       <Eyes draft={draft} result={result} desk={desk} />
-      <OptionStrip options={stripOptions(draft.options, results)} chosen={chosen} />
+      <OptionStrip options={stripOptions(draft.options, results, book)} chosen={chosen} />
       {option && result ? (
         <OneOption
           quote={quote}
@@ -114,7 +114,13 @@ export function DraftSheet({
       ) : null}
       <MarginNote>{CAUTION}</MarginNote>
       {sending ? (
-        <SendDialog quote={quote} desk={desk} results={results} onClose={() => setSending(false)} />
+        <SendDialog
+          quote={quote}
+          desk={desk}
+          book={book}
+          results={results}
+          onClose={() => setSending(false)}
+        />
       ) : null}
     </Page>
   );
@@ -249,7 +255,7 @@ function OneOption({
   readonly onRemove: (() => void) | undefined;
 }) {
   const errors = fieldErrors(result.ok ? [] : result.refusals);
-  const words = optionWords(option).replace(/^./, (first) => first.toLowerCase());
+  const words = optionWords(option, book).replace(/^./, (first) => first.toLowerCase());
   return (
     <>
       <EyeWishes
@@ -267,7 +273,7 @@ function OneOption({
             label={`Name of option ${letter}`}
             value={option.label}
             maxLength={80}
-            placeholder={optionWords({ ...option, label: '' })}
+            placeholder={optionWords({ ...option, label: '' }, book)}
             className="w-full max-w-xs"
             onChange={(label) => onChange({ ...option, label })}
           />
@@ -305,7 +311,9 @@ function OneOption({
             ))}
           </ul>
           {errors.rest(SHOWN).length > 0 ? null : (
-            <p className="mt-1 text-small text-soft">Each is marked at its field.</p>
+            <p className="mt-1 text-small text-soft">
+              {result.refusals.length === 1 ? 'It is marked at its field.' : 'Each is marked at its field.'}
+            </p>
           )}
         </div>
       )}

@@ -28,7 +28,9 @@ export function EyeWishes({
   return (
     <EyeColumns headings={false}>
       {(eye) => (
-        <div className="grid gap-4 sm:grid-cols-2">
+        <div
+          className={`grid gap-4 ${packaged === null && option.procedures[eye] !== null ? 'sm:max-md:grid-cols-2 xl:grid-cols-2' : ''}`}
+        >
           <ProcedureField
             eye={eye}
             option={option}
@@ -49,7 +51,7 @@ export function EyeWishes({
               }
               choices={[
                 { value: '', label: 'No cover' },
-                ...book.covers.map((cover) => ({ value: cover.id, label: cover.label })),
+                ...book.covers.map((cover) => ({ value: cover.id, label: withoutPrefix(cover.label) })),
               ]}
             />
           ) : null}
@@ -66,6 +68,11 @@ export function EyeWishes({
       )}
     </EyeColumns>
   );
+}
+
+/** "24 months": the field's own label says what it is. */
+function withoutPrefix(label: string): string {
+  return label.replace(/^enhancement cover,\s*/i, '').replace(/^./, (letter) => letter.toUpperCase());
 }
 
 function ProcedureField({
@@ -100,7 +107,10 @@ function ProcedureField({
         { value: '', label: 'This eye is not treated' },
         ...book.procedures.map((procedure) => ({
           value: procedure.id,
-          label: approved?.includes(procedure.id) ? `${procedure.label} · approved` : procedure.label,
+          label:
+            procedure.id !== chosen && approved?.includes(procedure.id)
+              ? `${procedure.label} · approved`
+              : procedure.label,
         })),
         ...(gone ? [{ value: chosen, label: `${chosen}, no longer in the price book` }] : []),
       ]}

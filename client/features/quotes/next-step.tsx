@@ -109,6 +109,9 @@ function Words({ quote }: { readonly quote: QuoteView }): ReactNode {
   return (
     <>
       Good until {formatDay(version.validUntil)}; {opened}.
+      {version.options.every((option) => option.priced.standing === 'estimate')
+        ? ' An estimate: once the surgeon has approved a plan, change it and send it anew.'
+        : ''}
       {quote.draftDiffers ? ' The draft has changes that were not sent.' : ''}
     </>
   );

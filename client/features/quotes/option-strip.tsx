@@ -1,6 +1,6 @@
 import { Link, useSearchParams } from 'react-router-dom';
 import { moneyText } from '#client/ui/money.tsx';
-import type { QuoteResult } from '#domain/pricing/index';
+import type { PriceBook, QuoteResult } from '#domain/pricing/index';
 import { type OptionDraft, optionLetter, optionWords } from '#domain/quotes/index';
 
 /** Which option the address asks for, from 0. */
@@ -20,11 +20,12 @@ export interface StripOption {
 export function stripOptions(
   options: readonly OptionDraft[],
   results: readonly QuoteResult[],
+  book: PriceBook,
 ): StripOption[] {
   return options.map((option, index) => {
     const result = results[index];
     return {
-      words: optionWords(option),
+      words: optionWords(option, book),
       total: result?.ok ? moneyText(result.course.totalMinor, result.course.currency) : undefined,
     };
   });

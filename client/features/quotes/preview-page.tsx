@@ -46,7 +46,7 @@ function optionsOf(quote: QuoteView, book: PriceBook, edit: boolean): readonly P
     const compiled = compilePriceBook(book);
     return draft.options.map((option) => {
       const result = priceOption(draft, option, quoteFacts(quote), compiled);
-      return { label: optionWords(option), course: result.ok ? result.course : null };
+      return { label: optionWords(option, book), course: result.ok ? result.course : null };
     });
   }
   return version?.options.map((option) => ({ label: option.label, course: option.priced })) ?? [];

@@ -69,7 +69,7 @@ function NarrowTable({ course, title, columns, rows }: TableProps) {
       {columns
         .filter((column) => row === 'together' || row.cells[column])
         .map((column) => (
-          <li key={column}>
+          <li key={column} className="whitespace-nowrap">
             <span className="mr-2 text-small text-soft">{HEADS[column]}</span>
             <Cell row={row} column={column} course={course} />
           </li>

@@ -8,7 +8,7 @@ import { Dialog } from '#client/ui/dialog.tsx';
 import { TextAreaField } from '#client/ui/fields.tsx';
 import { Money } from '#client/ui/money.tsx';
 import type { QuoteView } from '#contract/quotes';
-import type { PricedCourse, QuoteResult } from '#domain/pricing/index';
+import type { PriceBook, PricedCourse, QuoteResult } from '#domain/pricing/index';
 import { optionLetter, optionWords } from '#domain/quotes/index';
 import { formatDay } from '#domain/time/index';
 import { quoteQuery, useAskApproval, useIssueQuote } from './queries.ts';
@@ -17,6 +17,7 @@ import type { DraftDesk } from './use-draft.ts';
 interface SendProps {
   readonly quote: QuoteView;
   readonly desk: DraftDesk;
+  readonly book: PriceBook;
   readonly results: readonly QuoteResult[];
   readonly onClose: () => void;
 }
@@ -48,10 +49,7 @@ export function SendDialog(props: SendProps) {
         {courses.map((course, index) => (
           <li key={optionLetter(index)} className="flex justify-between gap-4 border-b border-rule py-2">
             <span>
-              Option {optionLetter(index)},{' '}
-              {optionWords(props.desk.draft.options[index] ?? NO_OPTION).replace(/^./, (letter) =>
-                letter.toLowerCase(),
-              )}
+              Option {optionLetter(index)}, {wordsOf(props, index)}
               {course.standing === 'estimate' ? <span className="text-povidone"> · estimate</span> : null}
             </span>
             <span className="font-extrabold">
@@ -72,17 +70,10 @@ export function SendDialog(props: SendProps) {
   );
 }
 
-const NO_OPTION = {
-  label: '',
-  procedures: { OD: null, OS: null },
-  covers: { OD: null, OS: null },
-  surgery: { plan: 'same_session', on: null },
-  priceListId: null,
-  packageId: null,
-  addOns: [],
-  discounts: [],
-  paymentPlanId: null,
-} as const;
+function wordsOf({ desk, book }: SendProps, index: number): string {
+  const option = desk.draft.options[index];
+  return option ? optionWords(option, book).replace(/^./, (letter) => letter.toLowerCase()) : '';
+}
 
 function Act(props: SendProps & { readonly courses: readonly PricedCourse[] }) {
   const needed = props.courses.flatMap((course) => course.approvals);

@@ -39,10 +39,12 @@ export function optionLetter(index: number): string {
   return String.fromCharCode(65 + index);
 }
 
-/** What an option is called: its own name, else the eyes and days: "Both eyes on one day", "Right eye". */
-export function optionWords(option: OptionDraft): string {
+/** What an option is called: its own name, else its package, else the eyes and days: "Both eyes on one day", "Right eye". */
+export function optionWords(option: OptionDraft, book: Pick<PriceBook, 'packages'>): string {
   const named = option.label.trim();
   if (named !== '') return named;
+  const packaged = book.packages.find((each) => each.id === option.packageId);
+  if (packaged) return packaged.label;
   const { OD, OS } = option.procedures;
   if (OD === null) return OS === null ? 'Nothing chosen yet' : 'Left eye';
   if (OS === null) return 'Right eye';

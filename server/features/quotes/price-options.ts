@@ -61,7 +61,7 @@ export function mustBePriced(options: readonly PricedOption[]): AgreedOption[] {
 export function priceOptions(draft: QuoteDraft, facts: QuoteFacts, book: PriceBook): PricedOption[] {
   const compiled = compilePriceBook(book);
   return draft.options.map((option: OptionDraft): PricedOption => {
-    const label = optionWords(option);
+    const label = optionWords(option, book);
     const read = optionInput(draft, option, facts, book);
     if (!read.ok) return { ok: false, label, refusals: read.refusals };
     const result = quoteCourse(read.input, compiled);

@@ -60,13 +60,15 @@ describe('name of an option', () => {
   test.each([
     [{}, 'Both eyes on one day'],
     [{ label: ' The short way ' }, 'The short way'],
+    [{ packageId: 'both-eyes-all-in' }, 'Both eyes, all in'],
+    [{ packageId: 'gone' }, 'Both eyes on one day'],
     [{ procedures: { OD: 'lasik', OS: null } }, 'Right eye'],
     [{ procedures: { OD: null, OS: 'lasik' } }, 'Left eye'],
     [{ procedures: { OD: null, OS: null } }, 'Nothing chosen yet'],
     [{ surgery: { plan: 'staged', on: { OD: null, OS: null } } }, 'One eye after the other'],
   ] as const)('%j · is told in words', (option, words) => {
     const [made] = draftOf(option).options;
-    expect(made && optionWords(made)).toBe(words);
+    expect(made && optionWords(made, demoPriceBook)).toBe(words);
   });
 });
 
