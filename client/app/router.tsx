@@ -125,6 +125,9 @@ export const router = createBrowserRouter([
           },
         ],
       },
+      ...(import.meta.env.DEV
+        ? [{ path: '/parts', lazy: page(() => import('./parts-page.tsx'), 'PartsPage') }]
+        : []),
       { path: '*', element: <ProblemPage missing /> },
     ],
   },

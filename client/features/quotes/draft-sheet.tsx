@@ -231,7 +231,7 @@ function priceErrors(errors: ReturnType<typeof fieldErrors>, eye: 'OD' | 'OS', d
   return { ...(sphere ? { sphere } : {}), ...(cylinder ? { cylinder } : {}) };
 }
 
-const SHOWN = ['eyes', 'surgery.on', 'packageId', 'priceListId', 'paymentPlanId', 'addOns', 'discounts'];
+const SHOWN = ['eyes.', 'surgery.on', 'packageId', 'priceListId', 'paymentPlanId', 'addOns', 'discounts'];
 
 function OneOption({
   quote,

@@ -100,7 +100,7 @@ function ProcedureField({
       label="Procedure"
       value={chosen ?? ''}
       disabled={disabled}
-      error={errors.at(`eyes.${eye}.procedureId`, 'eyes')}
+      error={errors.at(`eyes.${eye}.procedureId`)}
       hint={approvalWords(chosen, approved)}
       onChange={(id) => onChange(chooseProcedure(option, eye, id === '' ? null : id))}
       choices={[

@@ -78,10 +78,7 @@ function wordsOf({ desk, book }: SendProps, index: number): string {
 function Act(props: SendProps & { readonly courses: readonly PricedCourse[] }) {
   const needed = props.courses.flatMap((course) => course.approvals);
   const { approval } = props.quote;
-  const [askedAnyway, setAskedAnyway] = useState(false);
-  if (needed.length > 0 && approval?.state !== 'approved' && !askedAnyway) {
-    return <AskApproval {...props} onApproved={() => setAskedAnyway(true)} />;
-  }
+  if (needed.length > 0 && approval?.state !== 'approved') return <AskApproval {...props} />;
   return <Send {...props} />;
 }
 
@@ -189,9 +186,9 @@ function AskApproval({
   desk,
   courses,
   onClose,
-  onApproved,
-}: SendProps & { readonly courses: readonly PricedCourse[]; readonly onApproved: () => void }) {
+}: SendProps & { readonly courses: readonly PricedCourse[] }) {
   const announce = useAnnounce();
+  const client = useQueryClient();
   const ask = useAskApproval();
   const [reason, setReason] = useState('');
   const [refused, setRefused] = useState<string>();
@@ -224,7 +221,9 @@ function AskApproval({
             Asked by {approval.requestedBy}, waiting for a manager.
           </p>
           <div className="mt-6 flex flex-wrap gap-3">
-            <Button onPress={onApproved}>Send if it is approved by now</Button>
+            <Button onPress={() => void client.invalidateQueries(quoteQuery(quote.quoteId))}>
+              Look again
+            </Button>
             <Button kind="quiet" onPress={onClose}>
               Leave it
             </Button>
