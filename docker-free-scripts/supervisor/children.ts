@@ -1,6 +1,7 @@
 import { type ChildProcess, spawn } from 'node:child_process';
+import { closeSync, openSync } from 'node:fs';
 
-/** A program the supervisor started and ends again. */
+/** A program that was started here and is ended here. */
 export interface Child {
   readonly name: string;
   readonly process: ChildProcess;
@@ -10,34 +11,41 @@ export interface ChildOptions {
   readonly env?: Readonly<Record<string, string>>;
   /** Standard output is read for a JSON ready line instead of shown. */
   readonly quiet?: boolean;
+  /** Both outputs are added to this file instead of shown. */
+  readonly log?: string;
 }
 
-/** Starts a program in a group of its own: a Ctrl-C of the terminal reaches the supervisor alone, which ends them in order. */
+/**
+ * Starts a program in a session of its own, so that a Ctrl-C of the terminal reaches the supervisor alone, which ends its
+ * children in order. Should the supervisor be killed outright, the kernel asks the child to end (setpriv is Debian's util-linux).
+ */
 export function startChild(
   name: string,
   command: string,
   args: readonly string[],
   options: ChildOptions = {},
 ): Child {
-  const child = spawn(command, args, {
+  const log = options.log === undefined ? undefined : openSync(options.log, 'a');
+  const child = spawn('setpriv', ['--pdeathsig', 'TERM', '--', command, ...args], {
     env: { ...process.env, ...options.env },
-    stdio: ['ignore', options.quiet ? 'pipe' : 'inherit', 'inherit'],
+    stdio: ['ignore', log ?? (options.quiet ? 'pipe' : 'inherit'), log ?? 'inherit'],
     detached: true,
   });
+  if (log !== undefined) closeSync(log);
   return { name, process: child };
 }
 
-/** Waits for the JSON line a stand-in prints when it answers. Throws with a sentence when it ends before. */
+/** Waits for the JSON line a stand-in prints when it answers. Rejects with a sentence when it ends before. */
 export function readyLine(child: Child): Promise<Record<string, unknown>> {
   return new Promise((resolve, reject) => {
     let text = '';
     child.process.stdout?.on('data', (chunk: Buffer) => {
       text += chunk.toString();
-      const line = text.split('\n').find((each) => each.startsWith('{'));
-      if (line && text.includes('\n')) resolve(JSON.parse(line) as Record<string, unknown>);
+      const [line] = text.split('\n').filter((each, at, all) => each.startsWith('{') && at < all.length - 1);
+      if (line) resolve(JSON.parse(line) as Record<string, unknown>);
     });
     child.process.once('exit', () =>
-      reject(new Error(`${child.name} did not start. Is one of its ports taken?`)),
+      reject(new Error(`${child.name} did not start; what it said stands above.`)),
     );
     child.process.once('error', (error) =>
       reject(new Error(`${child.name} did not start: ${error.message}`)),
@@ -45,31 +53,19 @@ export function readyLine(child: Child): Promise<Record<string, unknown>> {
   });
 }
 
-const PATIENCE_MS = 12_000;
+const PATIENCE_MS = 20_000;
+
+export function hasEnded(child: Child): boolean {
+  const { exitCode, signalCode, pid } = child.process;
+  return exitCode !== null || signalCode !== null || pid === undefined;
+}
 
 /** Asks a child to end, waits, and in the end does not ask. */
 export async function endChild(child: Child): Promise<void> {
-  const { process: running } = child;
-  if (running.exitCode !== null || running.signalCode !== null || running.pid === undefined) return;
-  const ended = new Promise<void>((resolve) => running.once('exit', () => resolve()));
-  running.kill('SIGTERM');
-  const late = setTimeout(() => running.kill('SIGKILL'), PATIENCE_MS);
+  if (hasEnded(child)) return;
+  const ended = new Promise<void>((resolve) => child.process.once('exit', () => resolve()));
+  child.process.kill('SIGTERM');
+  const late = setTimeout(() => child.process.kill('SIGKILL'), PATIENCE_MS);
   await ended;
   clearTimeout(late);
-}
-
-/** Runs a program to its end; throws with a sentence when it fails. */
-export function runToEnd(
-  name: string,
-  command: string,
-  args: readonly string[],
-  env: Readonly<Record<string, string>>,
-): Promise<void> {
-  return new Promise((resolve, reject) => {
-    const child = spawn(command, args, { env: { ...process.env, ...env }, stdio: 'inherit' });
-    child.once('error', (error) => reject(new Error(`${name} failed: ${error.message}`)));
-    child.once('exit', (status) =>
-      status === 0 ? resolve() : reject(new Error(`${name} failed; what went wrong stands above.`)),
-    );
-  });
 }

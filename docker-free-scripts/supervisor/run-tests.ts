@@ -1,72 +1,92 @@
-import { spawnSync } from 'node:child_process';
-import { existsSync, mkdirSync, readFileSync, rmSync } from 'node:fs';
+import { existsSync, mkdtempSync, readFileSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
 import path from 'node:path';
-import { build } from './build.ts';
+import { build, CLIENT, SERVER } from './build.ts';
+import { Household } from './household.ts';
 
 const ALL = ['architecture', 'unit', 'reference', 'integration', 'faults', 'browser'];
-const REPORT = '.data/test-report.json';
 
 interface Report {
-  readonly success: boolean;
   readonly testResults: readonly {
     readonly name: string;
-    readonly assertionResults: readonly { readonly status: string }[];
     readonly status: string;
+    readonly assertionResults: readonly { readonly status: string }[];
   }[];
 }
 
+/** Whatever the tests make while they run stands in here, and goes with them even when they are killed. */
+const folder = mkdtempSync(path.join(tmpdir(), 'tl-test-'));
+const household = new Household(() => undefined);
+
 /** Builds what browser tests open, runs the projects, prints totals by project and the one line CI reads. */
-function main(): void {
-  const asked = process.argv.slice(2);
-  const unknown = asked.filter((name) => !ALL.includes(name));
-  if (unknown.length > 0) {
-    process.stderr.write(`There is no test project ${unknown.join(', ')}; there are ${ALL.join(', ')}.\n`);
-    process.exit(2);
-  }
+async function main(): Promise<number> {
+  for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) process.on(signal, () => void stop(1));
+  const asked = process.argv.slice(2).filter((each) => ALL.includes(each));
+  const others = process.argv.slice(2).filter((each) => !ALL.includes(each));
   const projects = (asked.length > 0 ? asked : ALL).filter((name) => existsSync(`tests/${name}`));
-  build();
-  mkdirSync('.data', { recursive: true });
-  rmSync(REPORT, { force: true });
-  const run = spawnSync(
-    process.execPath,
-    [
-      'node_modules/vitest/vitest.mjs',
-      'run',
-      '--config',
-      'tests/vitest.config.ts',
-      ...projects.flatMap((name) => ['--project', name]),
-      '--reporter=default',
-      '--reporter=json',
-      `--outputFile.json=${REPORT}`,
-    ],
-    { stdio: 'inherit' },
+  await build(household, SERVER, CLIENT);
+  const report = path.join(folder, 'report.json');
+  const args = [
+    ...['node_modules/vitest/vitest.mjs', 'run', '--config', 'tests/vitest.config.ts'],
+    ...projects.flatMap((name) => ['--project', name]),
+    ...['--reporter=default', '--reporter=json', `--outputFile.json=${report}`],
+    ...others,
+  ];
+  // Vitest says by its exit status that a test failed; the report says it in full.
+  const clean = await household.run('Vitest', process.execPath, args, { TMPDIR: folder }).then(
+    () => true,
+    () => false,
   );
-  if (!existsSync(REPORT)) {
-    process.stderr.write('The tests ended without a report.\n');
-    process.exit(1);
-  }
-  const report = JSON.parse(readFileSync(REPORT, 'utf8')) as Report;
+  if (!existsSync(report)) throw new Error('The tests ended without a report.');
+  return printTotals(JSON.parse(readFileSync(report, 'utf8')) as Report, projects, clean);
+}
+
+/** Prints a line a project and the totals; answers the exit status. A file that failed outside its tests counts as one failure. */
+function printTotals(report: Report, projects: readonly string[], clean: boolean): number {
   let passed = 0;
   let failed = 0;
+  process.stdout.write('\n');
   for (const project of projects) {
     const files = report.testResults.filter((file) =>
       path.relative(process.cwd(), file.name).startsWith(`tests/${project}/`),
     );
     const statuses = files.flatMap((file) => file.assertionResults.map((test) => test.status));
     const good = statuses.filter((status) => status === 'passed').length;
-    // A file that failed before its first test counts as one failure.
     const bad =
       statuses.filter((status) => status === 'failed').length +
-      files.filter((file) => file.status === 'failed' && file.assertionResults.length === 0).length;
+      files.filter((file) => file.status === 'failed' && file.assertionResults.every(hasPassed)).length;
     process.stdout.write(
       `${project.padEnd(14)} ${String(good).padStart(5)} passed ${String(bad).padStart(5)} failed\n`,
     );
     passed += good;
     failed += bad;
   }
-  if (run.status !== 0 && failed === 0) failed = 1;
+  // An error outside every file, such as a server that would not start.
+  if (!clean && failed === 0) failed = 1;
   process.stdout.write(`${passed} passed, ${failed} failed\n`);
-  process.exit(failed === 0 && passed > 0 ? 0 : 1);
+  return failed === 0 && passed > 0 ? 0 : 1;
 }
 
-main();
+function hasPassed(test: { readonly status: string }): boolean {
+  return test.status === 'passed';
+}
+
+let stopping = false;
+
+async function stop(status: number): Promise<void> {
+  if (stopping) return;
+  stopping = true;
+  await household.end();
+  // A database asked to end at the last moment may still be writing here.
+  rmSync(folder, { recursive: true, force: true, maxRetries: 20, retryDelay: 250 });
+  process.exit(status);
+}
+
+main().then(
+  (status) => stop(status),
+  (error: unknown) => {
+    process.stderr.write(`${error instanceof Error ? error.message : String(error)}\n`);
+    process.stdout.write('0 passed, 1 failed\n');
+    return stop(1);
+  },
+);
