@@ -19,6 +19,8 @@ const CLIENT = fileURLToPath(
   new URL(import.meta.url.endsWith('.ts') ? '../dist/client' : '../client', import.meta.url),
 );
 const STOP_WITHIN_MS = 10_000;
+/** How long requests under way may take once the process is asked to stop. */
+const REQUESTS_WITHIN_MS = 3_000;
 
 async function main(): Promise<void> {
   const config = readConfig(process.env);
@@ -84,8 +86,11 @@ function stopOnSignals(deps: AppDeps, parts: AppParts, server: Server, loops: re
     const closed = new Promise<void>((resolve) => server.close(() => resolve()));
     parts.streams.stop();
     server.closeIdleConnections();
+    // A connection a browser opened ahead of need counts as busy until its first request.
+    const late = setTimeout(() => server.closeAllConnections(), REQUESTS_WITHIN_MS);
     await Promise.all(loops.map((loop) => loop.stop()));
     await closed;
+    clearTimeout(late);
     deps.gateways.mail.close();
     await deps.db.destroy();
   };
