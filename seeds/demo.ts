@@ -203,7 +203,8 @@ async function closeEvening(
   const [terminal] = await rawRows<{ n: number; total: unknown }>(
     deps.db,
     `SELECT COUNT(*) AS n, SUM(t.amount_minor) AS total FROM receipt_tenders t JOIN receipts r ON r.receipt_id = t.receipt_id
-     WHERE r.site_id = ? AND r.booked_on = ? AND t.tender = 'card_machine'`,
+     LEFT JOIN receipt_voids v ON v.receipt_id = r.receipt_id
+     WHERE v.receipt_id IS NULL AND r.site_id = ? AND r.booked_on = ? AND t.tender = 'card_machine'`,
     [site.siteId, day],
   );
   if (terminal && terminal.n > 0) {
