@@ -16,6 +16,8 @@ import { formatDay } from '#domain/time/index';
 
 /** The rules of a price book in words, for people who read it rather than compute with it. */
 
+export const PER = { eye: 'per eye', session: 'per session', course: 'per course' } as const;
+
 /** "150.00" or "10 %". */
 export function chargeWords(charge: Charge, currency: CurrencyCode): string {
   return charge.kind === 'rate' ? formatRate(charge.rateBp) : formatAmount(charge.amountMinor, currency);

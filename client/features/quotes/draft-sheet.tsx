@@ -1,4 +1,4 @@
-import { useMemo, useState } from 'react';
+import { useState } from 'react';
 import { Link, useSearchParams } from 'react-router-dom';
 import { Button, LinkButton } from '#client/ui/button.tsx';
 import { EyeColumns } from '#client/ui/eye-columns.tsx';
@@ -8,15 +8,13 @@ import { Page } from '#client/ui/page.tsx';
 import { PrescriptionFields } from '#client/ui/prescription-fields.tsx';
 import { useSite } from '#client/ui/site.tsx';
 import type { QuoteView } from '#contract/quotes';
-import { compilePriceBook, type PriceBook, type QuoteResult } from '#domain/pricing/index';
+import type { PriceBook, QuoteResult } from '#domain/pricing/index';
 import {
   MOST_OPTIONS,
   type OptionDraft,
   optionLetter,
   optionWords,
-  priceOption,
   type QuoteDraft,
-  type QuoteFacts,
 } from '#domain/quotes/index';
 import { formatDay, formatTime } from '#domain/time/index';
 import { addOption, changeOption, removeOption, typePrescription } from './edit-draft.ts';
@@ -29,6 +27,7 @@ import { SaveConflict } from './save-conflict.tsx';
 import { SendDialog } from './send-dialog.tsx';
 import { Terms } from './terms.tsx';
 import { type DraftDesk, useDraft } from './use-draft.ts';
+import { usePrices } from './use-prices.ts';
 
 const CAUTION = (
   <>
@@ -124,31 +123,6 @@ export function DraftSheet({
       ) : null}
     </Page>
   );
-}
-
-/** Every option priced here and now by the engine the server has too. */
-function usePrices(quote: QuoteView, draft: QuoteDraft, book: PriceBook): readonly QuoteResult[] {
-  const compiled = useMemo(() => compilePriceBook(book), [book]);
-  const facts = useMemo<QuoteFacts>(() => quoteFacts(quote), [quote]);
-  return useMemo(
-    () => draft.options.map((option) => priceOption(draft, option, facts, compiled)),
-    [draft, facts, compiled],
-  );
-}
-
-/** What the server says a price depends on beside the draft. */
-export function quoteFacts({ plan, today }: QuoteView): QuoteFacts {
-  return {
-    quotedOn: today,
-    approvedPlan: plan
-      ? {
-          approvedBy: plan.surgeonName,
-          approvedOn: plan.approvedOn,
-          expiresOn: plan.expiresOn,
-          procedureIds: { OD: plan.procedureIds.OD, OS: plan.procedureIds.OS },
-        }
-      : null,
-  };
 }
 
 function SavedWords({ quote, desk }: { readonly quote: QuoteView; readonly desk: DraftDesk }) {

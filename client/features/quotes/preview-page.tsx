@@ -8,8 +8,8 @@ import type { QuoteView } from '#contract/quotes';
 import { compilePriceBook, type PriceBook, type PricedCourse } from '#domain/pricing/index';
 import { optionLetter, optionWords, priceOption } from '#domain/quotes/index';
 import { formatDay } from '#domain/time/index';
-import { quoteFacts } from './draft-sheet.tsx';
 import { pricingBookQuery, quoteQuery } from './queries.ts';
+import { quoteFacts } from './use-prices.ts';
 import { cancellationWords, dueDayWords, toPayWords } from './words.ts';
 
 /** What the patient will read, at the width of a phone: the draft where one is being written, else what went out. */

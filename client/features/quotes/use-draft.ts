@@ -1,4 +1,4 @@
-import { useQueryClient } from '@tanstack/react-query';
+import { type QueryClient, useQueryClient } from '@tanstack/react-query';
 import { useCallback, useEffect, useMemo, useRef, useState } from 'react';
 import { call } from '#client/api/call.ts';
 import { ProblemError } from '#client/api/problem-error.ts';
@@ -51,24 +51,10 @@ export function useDraft(quote: QuoteView, initial: QuoteDraft): DraftDesk {
       version: version.current,
       restMs: REST_MS,
       save: async (next, from) => {
-        const body = { draft: next as WireDraft, draftVersion: from };
-        const saved = await call(saveDraft, { params: { quoteId }, body });
+        const saved = await saveAndShare(client, quoteId, next, from);
         version.current = saved.draftVersion;
         setShownVersion(saved.draftVersion);
         setSavedAt(saved.savedAt);
-        // What other pages read of this quote is the draft just saved, not the one first fetched.
-        client.setQueryData(quoteQuery(quoteId).queryKey, (before) =>
-          before
-            ? {
-                ...before,
-                draft: body.draft,
-                draftVersion: saved.draftVersion,
-                changedAt: saved.savedAt,
-                prices: saved.prices,
-                draftDiffers: true,
-              }
-            : before,
-        );
         return { version: saved.draftVersion };
       },
       isConflict: (error) => error instanceof ProblemError && error.code === 'conflict',
@@ -120,6 +106,25 @@ export function useDraft(quote: QuoteView, initial: QuoteDraft): DraftDesk {
     () => ({ draft, version: shownVersion, state, savedAt, problem, change, flush, takeTheirs, keepMine }),
     [draft, shownVersion, state, savedAt, problem, change, flush, takeTheirs, keepMine],
   );
+}
+
+/** Saves a draft; what other pages read of this quote is then the draft just saved, not the one first fetched. */
+async function saveAndShare(client: QueryClient, quoteId: number, draft: QuoteDraft, draftVersion: number) {
+  const body = { draft: draft as WireDraft, draftVersion };
+  const saved = await call(saveDraft, { params: { quoteId }, body });
+  client.setQueryData(quoteQuery(quoteId).queryKey, (before) =>
+    before
+      ? {
+          ...before,
+          draft: body.draft,
+          draftVersion: saved.draftVersion,
+          changedAt: saved.savedAt,
+          prices: saved.prices,
+          draftDiffers: true,
+        }
+      : before,
+  );
+  return saved;
 }
 
 /** The browser asks before a page with unsaved work is closed. */
