@@ -7,7 +7,7 @@ body { font: 15px/1.5 system-ui, sans-serif; max-width: 52rem; margin: 0 auto; p
 ul { list-style: none; padding: 0; }
 li { padding: 0.6rem 0; border-bottom: 1px solid #8886; overflow-wrap: anywhere; }
 small { opacity: 0.8; }
-iframe { width: 100%; height: 65vh; border: 1px solid #888; background: #fff; }
+iframe { box-sizing: border-box; width: 100%; height: 65vh; border: 1px solid #888; background: #fff; }
 `;
 
 /** Links of a mail open in a window of their own: inside the frame they could run nothing. */
