@@ -23,7 +23,7 @@ export const SERVER: Part = {
 
 export const CLIENT: Part = {
   name: 'client',
-  args: ['node_modules/vite/bin/vite.js', 'build', '--logLevel', 'warn'],
+  args: ['node_modules/vite/bin/vite.js', 'build', '--logLevel', 'error'],
   sources: ['client', 'server/contract', 'server/domain', 'vite.config.ts', ...COMMON],
   made: ['dist/client'],
 };

@@ -1,13 +1,5 @@
-import { spawn } from 'node:child_process';
 import { existsSync } from 'node:fs';
-import {
-  instanceIn,
-  prepare,
-  runningPid,
-  serverCommand,
-  stopRunning,
-  untilAnswering,
-} from './mariadb-instance.ts';
+import { instanceIn, runningPid, startApart, stopRunning } from './mariadb-instance.ts';
 import { ownDatabase } from './own-database.ts';
 import { needFreePorts, portFrom } from './ports.ts';
 import { DATABASE_FOLDER, DATABASE_PORT } from './settings.ts';
@@ -21,15 +13,7 @@ async function start(): Promise<void> {
   if (runningPid(instance) === undefined) {
     const port = portFrom(process.env, DATABASE_PORT.variable, DATABASE_PORT.usual);
     await needFreePorts([{ variable: DATABASE_PORT.variable, port }]);
-    prepare(instance, port);
-    const [program, ...args] = serverCommand(instance);
-    const server = spawn(program, args, { stdio: 'ignore', detached: true });
-    let ended = false;
-    server.once('exit', () => {
-      ended = true;
-    });
-    await untilAnswering(instance, () => ended);
-    server.unref();
+    await startApart(instance, port);
   }
   const { app } = ownDatabase(instance);
   say(`MariaDB is running at ${new URL(app).host}; its socket is ${instance.socket}.`);

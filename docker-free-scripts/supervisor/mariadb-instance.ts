@@ -1,4 +1,4 @@
-import { execFileSync } from 'node:child_process';
+import { execFileSync, spawn } from 'node:child_process';
 import { createHash } from 'node:crypto';
 import { existsSync, mkdirSync, readFileSync, renameSync, rmSync, statSync, writeFileSync } from 'node:fs';
 import { userInfo } from 'node:os';
@@ -53,7 +53,8 @@ function makeData(data: string): void {
   const user = userInfo().username;
   const args = [
     '--no-defaults',
-    `--datadir=${making}`,
+    // Relative: the install script splits a path with spaces.
+    `--datadir=./${path.basename(making)}`,
     `--user=${user}`,
     '--auth-root-authentication-method=socket',
     `--auth-root-socket-user=${user}`,
@@ -61,7 +62,10 @@ function makeData(data: string): void {
     '--skip-name-resolve',
   ];
   try {
-    execFileSync(programPath('mariadb-install-db'), args, { stdio: ['ignore', 'pipe', 'pipe'] });
+    execFileSync(programPath('mariadb-install-db'), args, {
+      cwd: path.dirname(making),
+      stdio: ['ignore', 'pipe', 'pipe'],
+    });
   } catch (error) {
     const said = error as { stdout?: Buffer; stderr?: Buffer };
     throw new Error(
@@ -146,6 +150,19 @@ function complaints(instance: MariadbInstance): string {
   const lines = readFileSync(instance.log, 'utf8').trimEnd().split('\n');
   const errors = lines.filter((line) => line.includes('[ERROR]'));
   return (errors.length > 0 ? errors : lines).slice(-4).join('\n');
+}
+
+/** Starts the server so that it outlives this process, and waits until it answers. Throws with a sentence. */
+export async function startApart(instance: MariadbInstance, port: number): Promise<void> {
+  prepare(instance, port);
+  const [program, ...args] = serverCommand(instance);
+  const server = spawn(program, args, { stdio: 'ignore', detached: true });
+  let ended = false;
+  server.once('exit', () => {
+    ended = true;
+  });
+  await untilAnswering(instance, () => ended);
+  server.unref();
 }
 
 /** Asks the running server to end and waits for it. False when none ran. */

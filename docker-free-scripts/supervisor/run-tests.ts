@@ -3,16 +3,9 @@ import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { build, CLIENT, SERVER } from './build.ts';
 import { Household } from './household.ts';
+import { type Report, totalsOf } from './test-totals.ts';
 
 const ALL = ['architecture', 'unit', 'reference', 'integration', 'faults', 'browser'];
-
-interface Report {
-  readonly testResults: readonly {
-    readonly name: string;
-    readonly status: string;
-    readonly assertionResults: readonly { readonly status: string }[];
-  }[];
-}
 
 /** Whatever the tests make while they run stands in here, and goes with them even when they are killed. */
 const folder = mkdtempSync(path.join(tmpdir(), 'tl-test-'));
@@ -38,37 +31,10 @@ async function main(): Promise<number> {
     () => false,
   );
   if (!existsSync(report)) throw new Error('The tests ended without a report.');
-  return printTotals(JSON.parse(readFileSync(report, 'utf8')) as Report, projects, clean);
-}
-
-/** Prints a line a project and the totals; answers the exit status. A file that failed outside its tests counts as one failure. */
-function printTotals(report: Report, projects: readonly string[], clean: boolean): number {
-  let passed = 0;
-  let failed = 0;
-  process.stdout.write('\n');
-  for (const project of projects) {
-    const files = report.testResults.filter((file) =>
-      path.relative(process.cwd(), file.name).startsWith(`tests/${project}/`),
-    );
-    const statuses = files.flatMap((file) => file.assertionResults.map((test) => test.status));
-    const good = statuses.filter((status) => status === 'passed').length;
-    const bad =
-      statuses.filter((status) => status === 'failed').length +
-      files.filter((file) => file.status === 'failed' && file.assertionResults.every(hasPassed)).length;
-    process.stdout.write(
-      `${project.padEnd(14)} ${String(good).padStart(5)} passed ${String(bad).padStart(5)} failed\n`,
-    );
-    passed += good;
-    failed += bad;
-  }
-  // An error outside every file, such as a server that would not start.
-  if (!clean && failed === 0) failed = 1;
-  process.stdout.write(`${passed} passed, ${failed} failed\n`);
+  const told = JSON.parse(readFileSync(report, 'utf8')) as Report;
+  const { lines, passed, failed } = totalsOf(told, projects, { root: process.cwd(), clean });
+  process.stdout.write(`\n${lines.join('\n')}\n`);
   return failed === 0 && passed > 0 ? 0 : 1;
-}
-
-function hasPassed(test: { readonly status: string }): boolean {
-  return test.status === 'passed';
 }
 
 let stopping = false;

@@ -36,7 +36,30 @@ export interface Settings {
 /** Reads and checks the environment. Throws with a sentence. */
 export function readSettings(env: NodeJS.ProcessEnv): Settings {
   const demo = (env.TENDERLIGHT_MODE || 'demo') === 'demo';
-  const ports = {
+  const ports = readPorts(env);
+  const host = env.HOST || '127.0.0.1';
+  const near = ['0.0.0.0', '::'].includes(host) ? '127.0.0.1' : host;
+  const told = {
+    demo,
+    address: env.PUBLIC_URL || `http://${near}:${ports.app}`,
+    password: env.DEMO_PASSWORD || DEMO_PASSWORD,
+    ports,
+    stripeStandIn: demo && !env.STRIPE_SECRET_KEY,
+    mailbox: demo && !env.SMTP_URL,
+  };
+  return {
+    ...told,
+    readyUrl: `http://${near}:${ports.app}/api/ready`,
+    suppliedDatabase: suppliedDatabase(env),
+    wanted: wantedPorts(told, host),
+    server: serverEnvironment(told, env),
+  };
+}
+
+type Told = Pick<Settings, 'demo' | 'address' | 'password' | 'ports' | 'stripeStandIn' | 'mailbox'>;
+
+function readPorts(env: NodeJS.ProcessEnv): Settings['ports'] {
+  return {
     app: portFrom(env, 'PORT', 5180),
     database: portFrom(env, DATABASE_PORT.variable, DATABASE_PORT.usual),
     stripe: portFrom(env, 'STRIPE_MOCK_PORT', 5181),
@@ -44,56 +67,40 @@ export function readSettings(env: NodeJS.ProcessEnv): Settings {
     smtp: portFrom(env, 'MAILBOX_SMTP_PORT', 5183),
     mailbox: portFrom(env, 'MAILBOX_PORT', 5184),
   };
-  const host = env.HOST || '127.0.0.1';
-  const near = ['0.0.0.0', '::'].includes(host) ? '127.0.0.1' : host;
-  const stripeStandIn = demo && !env.STRIPE_SECRET_KEY;
-  const mailbox = demo && !env.SMTP_URL;
-  const address = env.PUBLIC_URL || `http://${near}:${ports.app}`;
-  const password = env.DEMO_PASSWORD || DEMO_PASSWORD;
+}
+
+function wantedPorts({ ports, stripeStandIn, mailbox }: Told, host: string): WantedPort[] {
+  const app = [{ variable: 'PORT', port: ports.app, host }];
+  const stripe = [
+    { variable: 'STRIPE_MOCK_PORT', port: ports.stripe },
+    { variable: 'STRIPE_MOCK_CONTROL_PORT', port: ports.stripeControl },
+  ];
+  const mail = [
+    { variable: 'MAILBOX_SMTP_PORT', port: ports.smtp },
+    { variable: 'MAILBOX_PORT', port: ports.mailbox },
+  ];
+  return [...app, ...(stripeStandIn ? stripe : []), ...(mailbox ? mail : [])];
+}
+
+function serverEnvironment(told: Told, env: NodeJS.ProcessEnv): Record<string, string> {
+  const stripe = {
+    STRIPE_SECRET_KEY: STAND_IN_STRIPE_KEY,
+    STRIPE_WEBHOOK_SECRET: STAND_IN_WEBHOOK_SECRET,
+    STRIPE_API_HOST: '127.0.0.1',
+    STRIPE_API_PORT: String(told.ports.stripe),
+    STRIPE_API_PROTOCOL: 'http',
+    STRIPE_MOCK_CONTROL_URL: `http://127.0.0.1:${told.ports.stripeControl}`,
+  };
   return {
-    demo,
-    address,
-    readyUrl: `http://${near}:${ports.app}/api/ready`,
-    password,
-    ports,
-    wanted: [
-      { variable: 'PORT', port: ports.app, host },
-      ...(stripeStandIn
-        ? [
-            { variable: 'STRIPE_MOCK_PORT', port: ports.stripe },
-            { variable: 'STRIPE_MOCK_CONTROL_PORT', port: ports.stripeControl },
-          ]
-        : []),
-      ...(mailbox
-        ? [
-            { variable: 'MAILBOX_SMTP_PORT', port: ports.smtp },
-            { variable: 'MAILBOX_PORT', port: ports.mailbox },
-          ]
-        : []),
-    ],
-    suppliedDatabase: suppliedDatabase(env),
-    stripeStandIn,
-    mailbox,
-    server: {
-      NODE_ENV: 'production',
-      TENDERLIGHT_MODE: env.TENDERLIGHT_MODE || 'demo',
-      PORT: String(ports.app),
-      PUBLIC_URL: address,
-      LOG_LEVEL: env.LOG_LEVEL || 'warn',
-      SESSION_SECRET: env.SESSION_SECRET || keptSecret(),
-      ...(demo ? { DEMO_PASSWORD: password } : {}),
-      ...(stripeStandIn
-        ? {
-            STRIPE_SECRET_KEY: STAND_IN_STRIPE_KEY,
-            STRIPE_WEBHOOK_SECRET: STAND_IN_WEBHOOK_SECRET,
-            STRIPE_API_HOST: '127.0.0.1',
-            STRIPE_API_PORT: String(ports.stripe),
-            STRIPE_API_PROTOCOL: 'http',
-            STRIPE_MOCK_CONTROL_URL: `http://127.0.0.1:${ports.stripeControl}`,
-          }
-        : {}),
-      ...(mailbox ? { SMTP_URL: `smtp://127.0.0.1:${ports.smtp}` } : {}),
-    },
+    NODE_ENV: 'production',
+    TENDERLIGHT_MODE: env.TENDERLIGHT_MODE || 'demo',
+    PORT: String(told.ports.app),
+    PUBLIC_URL: told.address,
+    LOG_LEVEL: env.LOG_LEVEL || 'warn',
+    SESSION_SECRET: env.SESSION_SECRET || keptSecret(),
+    ...(told.demo ? { DEMO_PASSWORD: told.password } : {}),
+    ...(told.stripeStandIn ? stripe : {}),
+    ...(told.mailbox ? { SMTP_URL: `smtp://127.0.0.1:${told.ports.smtp}` } : {}),
   };
 }
 
