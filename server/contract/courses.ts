@@ -94,7 +94,7 @@ export const getCourse = defineContract({
   summary: 'A course of care: eyes, what is due and paid, receipts',
   method: 'get',
   path: '/api/courses/:courseId',
-  access: staff('counsellor', 'front_desk', 'manager', 'auditor'),
+  access: staff('counsellor', 'front_desk', 'surgeon', 'manager', 'auditor'),
   params: z.object({ courseId: idField }),
   response: courseSchema,
 });
