@@ -6,11 +6,12 @@ import { computeProof } from '#server/features/proof/index';
 import { systemClock } from '#server/platform/clock';
 import { rawRows, readMinor } from '#server/platform/db';
 import { type Mailbox, startMailbox } from '#stand-ins/mailbox/start-mailbox';
-import { type ChainHouse, courseOfQuote, issueQuoteByHttp, makeChainHouse } from '#tests/factories/chain';
+import { type ChainHouse, courseOfQuote, makeChainHouse } from '#tests/factories/chain';
 import { expectSound, launchBrowser, openWindow, type Person, signInWindow } from '#tests/support/browser';
 import { type TestApp, testApp } from '#tests/support/test-app';
 import { freshDatabase } from '#tests/support/test-database';
 import { type TestStripe, testStripe } from '#tests/support/test-stripe';
+import { sendQuoteOnScreen } from './send-quote.ts';
 
 const CLIENT = fileURLToPath(new URL('../../../dist/client', import.meta.url));
 
@@ -51,12 +52,9 @@ async function signedIn(name: keyof ChainHouse['people'], width?: number): Promi
 }
 
 describe('the chain in the browser', () => {
-  test('patient, desk, surgeon and second person · walk it in one go', async () => {
-    const quote = await issueQuoteByHttp(app, house, {
-      OD: { sphere: '-3.00', cylinder: '-0.75', axis: '10' },
-      OS: { sphere: '-2.75', cylinder: '-0.50', axis: '170' },
-      surgeryOn: house.today,
-    });
+  test('counsellor, surgeon, patient, desk and second person · walk it in one go', async () => {
+    const surgeon = await signedIn('surgeon', 390);
+    const quote = await sendQuoteOnScreen(await signedIn('counsellor'), surgeon, house.today);
     await app.settle();
     const desk = await signedIn('desk');
     await expectSound(desk.page);
@@ -116,18 +114,16 @@ describe('the chain in the browser', () => {
     await expectSound(desk.page);
 
     // The surgeon records both eyes and sees the fee on a phone.
-    const surgeon = await signedIn('surgeon', 390);
-    await surgeon.page.goto(`/patients/${quote.patientId}`);
-    await surgeon.page.waitForLoadState();
+    await surgeon.page.goto(`/courses/${courseId}`);
+    for (const side of ['right', 'left']) {
+      const record = surgeon.page.getByRole('button', { name: `Record the ${side} eye as done` });
+      await record.click();
+      await surgeon.page.getByRole('button', { name: 'Record it as done' }).click();
+      await record.waitFor({ state: 'detached' });
+    }
     await expectSound(surgeon.page);
     await desk.page.goto(`/courses/${courseId}`);
-    for (const side of ['right', 'left']) {
-      await desk.page.getByRole('button', { name: `Record the ${side} eye as done` }).click();
-      await desk.page.getByRole('button', { name: 'Record it as done' }).click();
-      await desk.page
-        .getByRole('button', { name: `Record the ${side} eye as done` })
-        .waitFor({ state: 'detached' });
-    }
+    await desk.page.getByRole('heading', { level: 1 }).waitFor();
     await expectSound(desk.page);
     await surgeon.page.goto('/fees');
     await surgeon.page.getByRole('button', { name: '€800.00, why' }).click();
@@ -172,6 +168,21 @@ describe('the chain in the browser', () => {
       "SELECT SUM(amount_minor) AS total FROM journal_lines WHERE account_code = '1100'",
     );
     expect(readMinor(clearing?.total)).toBe(await app.deps.gateways.stripe.balance(proof.currency));
+    const [trial] = await rawRows<{ total: unknown }>(
+      app.deps.db,
+      'SELECT SUM(amount_minor) AS total FROM journal_lines',
+    );
+    expect(readMinor(trial?.total)).toBe(0);
+    // Two receipts, numbered without a gap, each with its own mail and PDF.
+    const receipts = await rawRows<{ number: string }>(
+      app.deps.db,
+      'SELECT number FROM receipts ORDER BY number',
+    );
+    expect(receipts.map((row) => Number(row.number.split('-').at(-1)))).toEqual([1, 2]);
+    const told = (await mailbox.mails()).filter((mail) => mail.subject.startsWith('Receipt'));
+    expect(told.map((mail) => mail.attachments.map((file) => file.contentType))).toEqual(
+      receipts.map(() => ['application/pdf']),
+    );
     expect(windows.flatMap((person) => person.errors)).toEqual([]);
   });
 
