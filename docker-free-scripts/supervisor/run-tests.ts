@@ -37,14 +37,25 @@ async function main(): Promise<number> {
   return failed === 0 && passed > 0 ? 0 : 1;
 }
 
+/** Removes the folder; a database asked to end at the last moment may still be writing in it. */
+async function removeFolder(): Promise<void> {
+  for (let tries = 0; tries < 20; tries += 1) {
+    try {
+      rmSync(folder, { recursive: true, force: true });
+      return;
+    } catch {
+      await new Promise((resolve) => setTimeout(resolve, 250));
+    }
+  }
+}
+
 let stopping = false;
 
 async function stop(status: number): Promise<void> {
   if (stopping) return;
   stopping = true;
   await household.end();
-  // A database asked to end at the last moment may still be writing here.
-  rmSync(folder, { recursive: true, force: true, maxRetries: 20, retryDelay: 250 });
+  await removeFolder();
   process.exit(status);
 }
 

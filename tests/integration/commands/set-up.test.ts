@@ -87,7 +87,7 @@ describe('the set-up of both commands', () => {
     const { folder, run } = bareTree({ npm: 'touch asked' });
     mkdirSync(path.join(folder, '.data'));
     writeFileSync(path.join(folder, '.data/address'), 'http://127.0.0.1:5999');
-    const holder = spawn('flock', ['.data/start.lock', 'sh', '-c', 'echo held; exec sleep 60'], {
+    const holder = spawn('flock', ['--no-fork', '.data/start.lock', 'sh', '-c', 'echo held; exec sleep 60'], {
       cwd: folder,
     });
     onTestFinished(() => {

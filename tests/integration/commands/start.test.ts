@@ -107,8 +107,7 @@ describe('npm start on an empty data folder', () => {
   test(
     'Ctrl-C · ends everything; another start finds the same data',
     async () => {
-      const receipts = (): string =>
-        asRoot(database, 'SELECT number FROM tenderlight.receipts ORDER BY 1');
+      const receipts = (): string => asRoot(database, 'SELECT number FROM tenderlight.receipts ORDER BY 1');
       const before = receipts();
       const children = childrenOf(start.supervisor);
       expect(children.length).toBeGreaterThanOrEqual(4);
