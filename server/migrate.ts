@@ -11,7 +11,7 @@ try {
   const app = new URL(appUrl);
   await migrateLatest(ownerUrl, {
     user: decodeURIComponent(app.username),
-    host: process.env.DATABASE_APP_HOST ?? app.hostname,
+    host: process.env.DATABASE_APP_HOST || app.hostname,
   });
 } catch (error) {
   process.stderr.write(
