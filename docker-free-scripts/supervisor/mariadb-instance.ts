@@ -115,7 +115,7 @@ export function runningPid(instance: MariadbInstance): number | undefined {
 }
 
 /** Runs SQL as the server's root, who is known by the socket; answers rows as lines, columns parted by tabs. */
-export function asRoot(instance: MariadbInstance, sql: string): string {
+export function asRoot(instance: Pick<MariadbInstance, 'socket'>, sql: string): string {
   return execFileSync(programPath('mariadb'), ['--no-defaults', '-S', instance.socket, '-N', '-B'], {
     input: sql,
     encoding: 'utf8',

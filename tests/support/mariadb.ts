@@ -3,6 +3,7 @@ import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { endChild, hasEnded, startChild } from '#stand-ins/supervisor/children';
 import {
+  asRoot,
   instanceIn,
   prepare,
   runningPid,
@@ -23,8 +24,13 @@ export interface TestServer {
 const PREFIX = 'tl-db-';
 const STALE_AFTER_MS = 60 * 60 * 1000;
 
-/** Starts a private MariaDB in a temporary folder; the folder goes with it, and the server with this process. */
+/**
+ * Starts a private MariaDB in a temporary folder; the folder goes with it, and the server with this process. One that runs
+ * already and lets us in as its root by the socket TENDERLIGHT_TEST_MARIADB_SOCKET is used instead and left running.
+ */
 export async function startTestMariadb(): Promise<TestServer> {
+  const given = process.env.TENDERLIGHT_TEST_MARIADB_SOCKET;
+  if (given) return runningServer(given);
   clearAway();
   const folder = mkdtempSync(path.join(tmpdir(), PREFIX));
   const instance = instanceIn(folder);
@@ -46,6 +52,10 @@ export async function startTestMariadb(): Promise<TestServer> {
       rmSync(folder, { recursive: true, force: true });
     },
   };
+}
+
+function runningServer(socket: string): TestServer {
+  return { socket, port: Number(asRoot({ socket }, 'SELECT @@port')), stop: () => Promise.resolve() };
 }
 
 /** Removes what a test run that was killed an hour or more ago left behind. */
