@@ -292,6 +292,7 @@ function MoneyOf({ course }: { readonly course: CourseView }) {
 }
 
 function Receipts({ course }: { readonly course: CourseView }) {
+  const mayRead = useRoles().some((role) => role !== 'surgeon');
   return (
     <Section title="Receipts">
       {course.receipts.length === 0 ? (
@@ -305,7 +306,12 @@ function Receipts({ course }: { readonly course: CourseView }) {
             {
               id: 'number',
               head: 'Receipt',
-              cell: (receipt) => <Link to={`/takings/receipts/${receipt.receiptId}`}>{receipt.number}</Link>,
+              cell: (receipt) =>
+                mayRead ? (
+                  <Link to={`/takings/receipts/${receipt.receiptId}`}>{receipt.number}</Link>
+                ) : (
+                  receipt.number
+                ),
             },
             { id: 'on', head: 'On', cell: (receipt) => formatDayShort(receipt.occurredOn) },
             { id: 'by', head: 'By', wide: true, cell: (receipt) => receipt.tenders.join(', ').toLowerCase() },

@@ -122,6 +122,10 @@ describe('the chain in the browser', () => {
       await record.waitFor({ state: 'detached' });
     }
     await expectSound(surgeon.page);
+    // Receipts are told to the surgeon, and lead nowhere they may not go.
+    const receiptTable = surgeon.page.getByRole('table', { name: 'Receipts' });
+    expect(await receiptTable.getByRole('row').count()).toBe(3);
+    expect(await receiptTable.getByRole('link').count()).toBe(0);
     await desk.page.goto(`/courses/${courseId}`);
     await desk.page.getByRole('heading', { level: 1 }).waitFor();
     await expectSound(desk.page);
