@@ -5,7 +5,7 @@ import { lockOpenDay } from '#server/features/business-days/index';
 import { lockCourse } from '#server/features/courses/index';
 import { postEntry, readEntry } from '#server/features/ledger/index';
 import { mustWorkAt, type StaffActor } from '#server/platform/actor';
-import { sqlInstant, type Trx } from '#server/platform/db';
+import { rawRows, sqlInstant, type Trx } from '#server/platform/db';
 import type { Deps } from '#server/platform/deps';
 import { hint } from '#server/platform/live-hints';
 import { BrokenInvariant, conflict, notFound, refused } from '#server/platform/problem';
@@ -93,4 +93,21 @@ async function mustBeVoidable(trx: Trx, deps: Deps, receipt: ReceiptView): Promi
   if (receipt.tenders.some((tender) => tender.tender === 'online_card')) {
     throw refused('paid_online', 'An online payment goes back as a refund to the card. Nothing was changed.');
   }
+  await mustStillBeInOpenTill(trx, receipt);
+}
+
+/** Cash that was counted cannot leave the till by a void: what it should hold would no longer be what was counted. */
+async function mustStillBeInOpenTill(trx: Trx, receipt: ReceiptView): Promise<void> {
+  if (!receipt.tenders.some((tender) => tender.tender === 'cash')) return;
+  const [shift] = await rawRows<{ state: string }>(
+    trx,
+    `SELECT x.state FROM receipts r JOIN till_sessions x ON x.till_session_id = r.till_session_id
+     WHERE r.receipt_id = ? LOCK IN SHARE MODE`,
+    [receipt.receiptId],
+  );
+  if (shift?.state === 'open') return;
+  throw refused(
+    'till_counted',
+    'The till this cash went into has been counted. Give it back as a refund; nothing was changed.',
+  );
 }
