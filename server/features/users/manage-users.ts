@@ -59,7 +59,8 @@ export async function inviteToClinic(
   });
 }
 
-async function insertInvited(
+/** A user who cannot sign in until a password is set. Throws conflict 'email_taken'. */
+export async function insertInvited(
   trx: Trx,
   deps: Deps,
   person: { readonly name: string; readonly email: string },
@@ -78,7 +79,8 @@ async function insertInvited(
   }
 }
 
-async function applyRights(trx: Trx, userId: number, rights: Rights): Promise<void> {
+/** Gives roles and sites; throws not_found for a site that is none. */
+export async function applyRights(trx: Trx, userId: number, rights: Rights): Promise<void> {
   try {
     await setRights(trx, userId, rights.roles, rights.siteIds);
   } catch (error) {
@@ -196,7 +198,8 @@ export async function setPasswordByToken(
   });
 }
 
-async function issueToken(
+/** Makes a secret of a purpose that lives `lifeMs`, stored as its digest, and gives the address that holds it. */
+export async function issueToken(
   trx: Trx,
   deps: Deps,
   userId: number,
