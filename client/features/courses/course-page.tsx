@@ -1,31 +1,21 @@
-import { queryOptions, useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
-import { useState } from 'react';
+import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
 import { Link, useParams } from 'react-router-dom';
 import { call } from '#client/api/call.ts';
 import { useSession } from '#client/api/session.ts';
 import { useAnnounce } from '#client/ui/announcer.tsx';
 import { Button, LinkButton } from '#client/ui/button.tsx';
-import { ConfirmDialog } from '#client/ui/dialog.tsx';
-import { DateField, TextAreaField } from '#client/ui/fields.tsx';
-import { Figure } from '#client/ui/figure.tsx';
 import { Money } from '#client/ui/money.tsx';
 import { Page, Section } from '#client/ui/page.tsx';
-import { PairMark } from '#client/ui/pair-mark.tsx';
 import { SheetTable } from '#client/ui/sheet-table.tsx';
 import { useSite } from '#client/ui/site.tsx';
 import { Caution, EmptyState, ErrorState, Skeleton, StateWord } from '#client/ui/states.tsx';
-import { type CourseView, getCourse } from '#contract/courses';
+import type { CourseView } from '#contract/courses';
 import type { Role } from '#contract/define';
-import { markEyeDone, recordVisit } from '#contract/delivery';
+import { recordVisit } from '#contract/delivery';
 import { formatDay, formatDayShort } from '#domain/time/index';
-
-type CourseEye = CourseView['eyes'][number];
-
-const courseQuery = (courseId: number) =>
-  queryOptions({
-    queryKey: ['course', courseId],
-    queryFn: ({ signal }) => call(getCourse, { params: { courseId } }, signal),
-  });
+import { CourseEyes } from './course-eyes.tsx';
+import { CourseMoney } from './course-money.tsx';
+import { courseQuery } from './queries.ts';
 
 /** A course of care: both eyes, what is due and paid, receipts, and the next step of each. */
 export function CoursePage() {
@@ -73,8 +63,8 @@ function Course({ course }: { readonly course: CourseView }) {
         ) : null
       }
     >
-      <Eyes course={course} roles={roles} />
-      <MoneyOf course={course} />
+      <CourseEyes course={course} roles={roles} />
+      <CourseMoney course={course} />
       <Receipts course={course} />
       <Visits course={course} roles={roles} />
       <Caution>
@@ -82,212 +72,6 @@ function Course({ course }: { readonly course: CourseView }) {
         clinic’s accounting policy.
       </Caution>
     </Page>
-  );
-}
-
-function Eyes({ course, roles }: { readonly course: CourseView; readonly roles: readonly Role[] }) {
-  const mayRecord = roles.some((role) => role === 'surgeon' || role === 'front_desk' || role === 'manager');
-  return (
-    <div className="grid border-t-2 border-ink sm:grid-cols-2">
-      {(['OD', 'OS'] as const).map((side, index) => {
-        const eye = course.eyes.find((each) => each.eye === side);
-        return (
-          <section
-            key={side}
-            aria-label={side === 'OD' ? 'Right eye' : 'Left eye'}
-            className={`py-4 ${index === 1 ? 'sm:border-l sm:border-ink sm:pl-6' : 'sm:pr-6'}`}
-          >
-            <h2 className="flex items-center gap-3">
-              {eye ? <PairMark eyes={[eye]} only={side} /> : null}
-              {side === 'OD' ? 'Right eye' : 'Left eye'}{' '}
-              <span className="text-small font-normal text-soft">{side}</span>
-            </h2>
-            {eye ? (
-              <EyeBody course={course} eye={eye} mayRecord={mayRecord} />
-            ) : (
-              <p className="mt-2 text-soft">not part of this course</p>
-            )}
-          </section>
-        );
-      })}
-    </div>
-  );
-}
-
-function EyeBody({
-  course,
-  eye,
-  mayRecord,
-}: {
-  readonly course: CourseView;
-  readonly eye: CourseEye;
-  readonly mayRecord: boolean;
-}) {
-  return (
-    <div className="mt-2">
-      <p>{eye.procedureName}</p>
-      <p className="text-small text-soft">{eyeWords(eye)}</p>
-      <dl className="mt-3 grid gap-1 text-small">
-        <div className="flex justify-between gap-4">
-          <dt className="text-soft">Its share of the price</dt>
-          <dd>
-            <Money amount={eye.priceMinor} currency={course.currency} />
-          </dd>
-        </div>
-        <div className="flex items-baseline justify-between gap-4">
-          <dt className="text-soft">Unpaid of it</dt>
-          <dd>
-            <Figure
-              id={`unpaid-${eye.eye}`}
-              amount={eye.unpaidMinor}
-              currency={course.currency}
-              why={eye.unpaidWhy}
-            />
-          </dd>
-        </div>
-      </dl>
-      {eye.state === 'planned' && mayRecord ? <MarkDone course={course} eye={eye} /> : null}
-    </div>
-  );
-}
-
-function eyeWords(eye: CourseEye): string {
-  if (eye.state === 'done' && eye.doneOn) return `done ${formatDay(eye.doneOn)}`;
-  if (eye.state === 'cancelled') return 'cancelled';
-  return eye.plannedOn ? `planned for ${formatDay(eye.plannedOn)}` : 'no day agreed yet';
-}
-
-function MarkDone({ course, eye }: { readonly course: CourseView; readonly eye: CourseEye }) {
-  const site = useSite();
-  const client = useQueryClient();
-  const announce = useAnnounce();
-  const [open, setOpen] = useState(false);
-  const [doneOn, setDoneOn] = useState<string>(site.businessDay);
-  const [reason, setReason] = useState('');
-  const unpaid = eye.unpaidMinor > 0;
-  const name = eye.eye === 'OD' ? 'right' : 'left';
-  const mark = useMutation({
-    mutationFn: () =>
-      call(markEyeDone, {
-        params: { courseId: course.courseId, eye: eye.eye },
-        body: { doneOn, ...(reason.trim() === '' ? {} : { overrideReason: reason.trim() }) },
-      }),
-    onSuccess: (next) => {
-      client.setQueryData(courseQuery(course.courseId).queryKey, next);
-      setOpen(false);
-      announce(`The ${name} eye is recorded as done.`);
-    },
-  });
-  return (
-    <div className="mt-4">
-      <Button onPress={() => setOpen(true)}>Record the {name} eye as done</Button>
-      <ConfirmDialog
-        title={`The ${name} eye of ${course.patient.name} is done`}
-        open={open}
-        onClose={() => setOpen(false)}
-        confirm="Record it as done"
-        sending={mark.isPending}
-        error={mark.error?.message}
-        onConfirm={() => mark.mutate()}
-      >
-        <p className="mb-4">
-          Its part of the price is earned with this, and {course.surgeonName}’s fee accrues. Neither can be
-          taken back without a correction that both can see.
-        </p>
-        <DateField label="Done on" value={doneOn} onChange={setDoneOn} />
-        {unpaid ? (
-          <TextAreaField
-            className="mt-4"
-            label="Reason to go on unpaid"
-            hint="The manager’s alone: part of this eye’s share is not paid and will stand as owed."
-            value={reason}
-            onChange={setReason}
-          />
-        ) : null}
-      </ConfirmDialog>
-    </div>
-  );
-}
-
-function MoneyOf({ course }: { readonly course: CourseView }) {
-  const { currency } = course;
-  return (
-    <Section title="What is due, and paid">
-      <SheetTable
-        caption="What is due, and paid"
-        rows={course.dues}
-        rowKey={(due) => due.dueNo}
-        columns={[
-          { id: 'what', head: 'When', cell: (due) => due.label },
-          {
-            id: 'on',
-            head: 'By',
-            cell: (due) => (due.dueOn ? formatDayShort(due.dueOn) : 'once a day is agreed'),
-          },
-          {
-            id: 'amount',
-            head: `Amount, ${currency}`,
-            align: 'right',
-            cell: (due) => <Money amount={due.amountMinor} currency={currency} />,
-          },
-          {
-            id: 'paid',
-            head: `Paid, ${currency}`,
-            align: 'right',
-            cell: (due) => <Money amount={due.paidMinor} currency={currency} />,
-          },
-          {
-            id: 'state',
-            head: 'State',
-            wide: true,
-            cell: (due) =>
-              due.paidMinor >= due.amountMinor ? (
-                <StateWord tone="settled">paid</StateWord>
-              ) : (
-                <StateWord tone="waiting">awaited</StateWord>
-              ),
-          },
-        ]}
-        total={
-          <tr>
-            <th scope="row" colSpan={2} className="py-3 text-left">
-              Left to pay
-            </th>
-            <td colSpan={2} className="py-3 pr-4 text-right">
-              <Figure id="left" amount={course.leftMinor} currency={currency} why={course.leftWhy} />
-            </td>
-            <td className="max-md:hidden" />
-          </tr>
-        }
-      />
-      <dl className="mt-4 grid gap-x-12 gap-y-2 text-small sm:grid-cols-2">
-        <div className="flex justify-between gap-4">
-          <dt className="text-soft">Due today</dt>
-          <dd>
-            <Figure id="due-now" amount={course.dueNowMinor} currency={currency} why={course.dueNowWhy} />
-          </dd>
-        </div>
-        <div className="flex justify-between gap-4">
-          <dt className="text-soft">Not ours yet, deferred income</dt>
-          <dd>
-            <Figure
-              id="held"
-              amount={course.notOursYetMinor}
-              currency={currency}
-              why={course.notOursYetWhy}
-            />
-          </dd>
-        </div>
-        {course.creditMinor > 0 ? (
-          <div className="flex justify-between gap-4">
-            <dt className="text-soft">Credit on account</dt>
-            <dd>
-              <Money amount={course.creditMinor} currency={currency} />
-            </dd>
-          </div>
-        ) : null}
-      </dl>
-    </Section>
   );
 }
 
